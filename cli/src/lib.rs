@@ -1,0 +1,1 @@
+//! The boundary: command line, files, formats. The only crate with I/O.

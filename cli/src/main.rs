@@ -1,0 +1,2 @@
+//! The `brinkline` binary.
+fn main() {}

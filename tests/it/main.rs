@@ -1,0 +1,1 @@
+//! One test binary for the workspace: verification, golden results, diagnostics, tidy rules and end-to-end runs.
