@@ -15,8 +15,8 @@ pub use rock::{
     Cohesive, DiscontinuitySurvey, HoekBrown, JointKind, JointSet, MassFactor, Rock, RockStrength, StrengthBasis, TestedState, Uncertain,
 };
 pub use site::{
-    AboveTable, Averaging, BackShape, Carries, Checks, ContactLine, Crack, Cut, Groundwater, Growth, Headline, Layer, PartialFactors, Person,
-    Probe, ReportIdentity, SeaLevel, Setting, Situation, StartShape, SurfacePoint, Surcharge, SurfaceSection, Survey, Undercut,
+    AboveTable, Averaging, BackShape, Carries, Checks, ContactLine, Crack, Cut, Groundwater, Growth, Headline, Layer, PartialFactors,
+    Person, Probe, ReportIdentity, SeaLevel, Setting, Situation, StartShape, Surcharge, SurfacePoint, SurfaceSection, Survey, Undercut,
 };
 
 /// Calendar date as written in the file.
