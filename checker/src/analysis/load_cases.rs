@@ -1,0 +1,119 @@
+//! Unit load cases: every state of weights, in-situ stress and loads is an exact superposition of them.
+//!
+//! For layers numbered from the top, `t_j` the thickness of layer `j` in the column above a point up to the un-eroded
+//! surface, `gamma_j` its unit weight and `k0_i` the in-situ stress ratio of layer `i`:
+//!
+//! ```text
+//! sigma0_zz = - sum_j gamma_j t_j                      case Weight(j),         coefficient gamma_j
+//! sigma0_xx = - sum_j k0_i gamma_j t_j  in layer i     case Horizontal(i, j),  coefficient k0_i gamma_j
+//! ```
+//!
+//! Ground motion adds `k_h gamma_j` seaward and takes `k_v gamma_j` off the weight without touching the in-situ stress.
+use crate::model::{Model, Situation};
+
+/// One unit load case.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum LoadCase {
+    /// Weight of a layer with its vertical in-situ stress; unit 1 N/m3.
+    Weight {
+        /// Layer.
+        layer: usize,
+    },
+    /// Horizontal in-situ stress in a layer from the unit weight of a layer above it or itself; unit 1 N/m3.
+    Horizontal {
+        /// Layer in which the stress acts.
+        layer: usize,
+        /// Layer that weighs.
+        above: usize,
+    },
+    /// Body force toward the sea on a layer; unit 1 N/m3.
+    Seaward {
+        /// Layer.
+        layer: usize,
+    },
+    /// Body force upward on a layer, without in-situ stress; unit 1 N/m3.
+    Upward {
+        /// Layer.
+        layer: usize,
+    },
+    /// Pressure of a surcharge on the ground; unit 1 Pa.
+    Surcharge {
+        /// Surcharge.
+        surcharge: usize,
+    },
+    /// Seaward drag of a surcharge whose mass shakes; unit 1 Pa.
+    SurchargeSeaward {
+        /// Surcharge.
+        surcharge: usize,
+    },
+}
+
+/// Values of the inputs that act linearly on stress.
+#[derive(Debug, Clone, PartialEq)]
+pub struct State {
+    /// Situation.
+    pub situation: usize,
+    /// Unit weight of each rock, N/m3.
+    pub unit_weight_n_per_m3: Vec<f64>,
+    /// In-situ horizontal over vertical stress of each rock.
+    pub k0: Vec<f64>,
+}
+
+/// All unit load cases that the model's situations need.
+#[derive(Debug, Clone, PartialEq)]
+pub struct CaseSet {
+    /// The cases, in the order of the solutions.
+    pub cases: Vec<LoadCase>,
+}
+
+impl CaseSet {
+    /// The cases of a model.
+    pub fn new(model: &Model) -> Self {
+        let n = model.layers.len();
+        let mut cases: Vec<LoadCase> = (0..n).map(|layer| LoadCase::Weight { layer }).collect();
+        cases.extend((0..n).flat_map(|layer| (0..=layer).map(move |above| LoadCase::Horizontal { layer, above })));
+        if model.situations.iter().any(|s| s.inertia_seaward.abs() > 0.0) {
+            cases.extend((0..n).map(|layer| LoadCase::Seaward { layer }));
+        }
+        if model.situations.iter().any(|s| s.inertia_up.abs() > 0.0) {
+            cases.extend((0..n).map(|layer| LoadCase::Upward { layer }));
+        }
+        cases.extend((0..model.surcharges.len()).map(|surcharge| LoadCase::Surcharge { surcharge }));
+        let shaking = |s: &Situation, q: usize| s.inertia_seaward.abs() > 0.0 && s.surcharges.contains(&q) && model.surcharges[q].inertia;
+        let dragged = (0..model.surcharges.len()).filter(|&q| model.situations.iter().any(|s| shaking(s, q)));
+        cases.extend(dragged.map(|surcharge| LoadCase::SurchargeSeaward { surcharge }));
+        Self { cases }
+    }
+
+    /// Coefficient of every case in a state; shape `[n_cases]`.
+    pub fn coefficients(&self, model: &Model, state: &State) -> Vec<f64> {
+        let situation = &model.situations[state.situation];
+        let gamma = |layer: usize| state.unit_weight_n_per_m3[model.layers[layer].rock];
+        let k0 = |layer: usize| state.k0[model.layers[layer].rock];
+        let acts = |surcharge: usize| situation.surcharges.contains(&surcharge);
+        let coefficient = |case: &LoadCase| match *case {
+            LoadCase::Weight { layer } => gamma(layer),
+            LoadCase::Horizontal { layer, above } => k0(layer) * gamma(above),
+            LoadCase::Seaward { layer } => situation.inertia_seaward * gamma(layer),
+            LoadCase::Upward { layer } => situation.inertia_up * gamma(layer),
+            LoadCase::Surcharge { surcharge } if acts(surcharge) => (1.0 - situation.inertia_up) * model.surcharges[surcharge].pressure_pa,
+            LoadCase::SurchargeSeaward { surcharge } if acts(surcharge) && model.surcharges[surcharge].inertia => {
+                situation.inertia_seaward * model.surcharges[surcharge].pressure_pa
+            }
+            LoadCase::Surcharge { .. } | LoadCase::SurchargeSeaward { .. } => 0.0,
+        };
+        self.cases.iter().map(coefficient).collect()
+    }
+}
+
+/// Sum of tensors times coefficients, `sum_c coefficient_c * tensor_c`.
+pub fn superpose(coefficients: &[f64], tensors: &[[f64; 3]]) -> [f64; 3] {
+    assert_eq!(coefficients.len(), tensors.len(), "one tensor a load case");
+    let mut sum = [0.0; 3];
+    for (c, t) in coefficients.iter().zip(tensors) {
+        for k in 0..3 {
+            sum[k] += c * t[k];
+        }
+    }
+    sum
+}

@@ -1,0 +1,56 @@
+//! Demands against capacities: from unit-case tensors at places and lines to one result a check.
+//!
+//! A demand is never a raw peak: it is the average of the effective stress tensor over a stated length or disc, or a
+//! section quantity from equilibrium. Tensors are stored per unit load case, so that any weights and in-situ stresses are
+//! an exact superposition.
+mod evaluate;
+mod line;
+mod place;
+mod states;
+
+pub use evaluate::{Evaluation, Found, evaluate};
+pub use line::{LineValue, Piece, SectionForces};
+pub use place::PlaceValue;
+pub use states::{InputCase, K0Case, k0_cases};
+
+/// A check, by its published id.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum CheckKind {
+    /// Tension under the ground behind the brow.
+    CliffTopTension,
+    /// Tension on back, roof, lip and face.
+    RoofTension,
+    /// Shear at a place.
+    LocalShear,
+    /// Fibre tension of a rupture line from equilibrium.
+    SectionBending,
+    /// Mean shear on a rupture line from equilibrium.
+    SectionShear,
+}
+
+impl CheckKind {
+    /// All checks, in the order of the results.
+    pub const ALL: [Self; 5] = [Self::CliffTopTension, Self::RoofTension, Self::LocalShear, Self::SectionBending, Self::SectionShear];
+
+    /// Published id.
+    pub fn id(self) -> &'static str {
+        match self {
+            Self::CliffTopTension => "cliff-top tension",
+            Self::RoofTension => "roof tension",
+            Self::LocalShear => "local shear",
+            Self::SectionBending => "section bending",
+            Self::SectionShear => "section shear",
+        }
+    }
+}
+
+/// Strength values of one rock as used in a check.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct RockLimits {
+    /// Tensile strength, Pa.
+    pub tensile_strength_pa: f64,
+    /// Effective cohesion, Pa.
+    pub cohesion_pa: f64,
+    /// Tangent of the effective friction angle.
+    pub tan_friction: f64,
+}

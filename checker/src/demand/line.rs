@@ -1,0 +1,164 @@
+//! Section forces on a straight rupture line, and what they ask of the rock on it.
+use super::RockLimits;
+use super::place::Pair;
+use crate::analysis::load_cases::State;
+use crate::model::{Carries, Model};
+
+/// A straight line from the hollow to the ground with the body that it cuts off.
+#[derive(Debug, Clone, PartialEq)]
+pub struct LineValue {
+    /// End at the hollow, m.
+    pub from_m: [f64; 2],
+    /// End at the ground, m.
+    pub to_m: [f64; 2],
+    /// Area of each layer in the cut-off body, m2.
+    pub areas_m2: Vec<f64>,
+    /// Centroid of each layer in it, m (anything where the area is 0).
+    pub centroids_m: Vec<[f64; 2]>,
+    /// Strip of each surcharge on it: loaded width in m and middle in m; width 0 where it carries none.
+    pub surcharges: Vec<(f64, [f64; 2])>,
+    /// Pieces of the line, from the hollow up, one a layer crossed.
+    pub pieces: Vec<Piece>,
+}
+
+/// The part of a rupture line in one layer.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Piece {
+    /// Layer.
+    pub layer: usize,
+    /// Ends along the line from its lower end, m.
+    pub along_m: [f64; 2],
+    /// Mean effective normal stress on the piece for every unit load case, Pa, tension positive.
+    pub normal_pa: Vec<f64>,
+    /// The same on the last mesh but one.
+    pub normal_coarse_pa: Vec<f64>,
+}
+
+/// Resultants on a line per meter of cliff.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct SectionForces {
+    /// Axial force, N/m, positive in tension.
+    pub axial_n_per_m: f64,
+    /// Shear force, N/m, positive when it carries the seaward side's weight.
+    pub shear_n_per_m: f64,
+    /// Moment about the middle of the line, N, positive when it opens the upper end.
+    pub moment_n: f64,
+}
+
+impl LineValue {
+    /// Length, m.
+    pub fn length_m(&self) -> f64 {
+        (self.to_m[0] - self.from_m[0]).hypot(self.to_m[1] - self.from_m[1])
+    }
+
+    /// Section forces by equilibrium of the cut-off body under its weight, ground motion and surcharges.
+    ///
+    /// With `e` the unit vector up the line, `n` the normal that points out of the body (landward), `F_k` the loads and `r_k`
+    /// their arms from the middle of the line:
+    ///
+    /// ```text
+    /// N = - sum F_k . n        V = - sum F_k . e        M = sum (r_x F_z - r_z F_x)
+    /// ```
+    pub fn forces(&self, model: &Model, state: &State) -> SectionForces {
+        let situation = &model.situations[state.situation];
+        let (kh, kv) = (situation.inertia_seaward, situation.inertia_up);
+        let weight = |j: usize| state.unit_weight_n_per_m3[model.layers[j].rock] * self.areas_m2[j];
+        let layers = (0..self.areas_m2.len()).filter(|&j| 0.0 < self.areas_m2[j]);
+        let bodies = layers.map(|j| ([-kh * weight(j), -(1.0 - kv) * weight(j)], self.centroids_m[j]));
+        let acting = self.surcharges.iter().enumerate().filter(|(q, s)| 0.0 < s.0 && situation.surcharges.contains(q));
+        let strips = acting.map(|(q, s)| {
+            let load = model.surcharges[q].pressure_pa * s.0;
+            let drag = if model.surcharges[q].inertia { kh } else { 0.0 };
+            ([-drag * load, -(1.0 - kv) * load], s.1)
+        });
+        self.resultants(bodies.chain(strips))
+    }
+
+    /// Resultants of given loads `(force, point)`.
+    fn resultants(&self, loads: impl Iterator<Item = ([f64; 2], [f64; 2])>) -> SectionForces {
+        let length = self.length_m();
+        let e = [(self.to_m[0] - self.from_m[0]) / length, (self.to_m[1] - self.from_m[1]) / length];
+        let n = [e[1], -e[0]];
+        let middle = [0.5 * (self.from_m[0] + self.to_m[0]), 0.5 * (self.from_m[1] + self.to_m[1])];
+        let mut sum = SectionForces { axial_n_per_m: 0.0, shear_n_per_m: 0.0, moment_n: 0.0 };
+        for (f, at) in loads {
+            let r = [at[0] - middle[0], at[1] - middle[1]];
+            sum.axial_n_per_m -= f[0] * n[0] + f[1] * n[1];
+            sum.shear_n_per_m -= f[0] * e[0] + f[1] * e[1];
+            sum.moment_n += r[0] * f[1] - r[1] * f[0];
+        }
+        sum
+    }
+
+    /// Largest ratio of fibre tension to tensile strength over both ends of every layer on the line, as place along the line,
+    /// layer and pair. `None` where no layer on the line carries tension.
+    ///
+    /// With `E' = E / (1 - nu^2)`, 0 for a layer that only loads, and `y` from the middle of the line:
+    ///
+    /// ```text
+    /// | int E'    int E' y   | |e0   |   |N|
+    /// | int E' y  int E' y^2 | |kappa| = |M|        sigma(y) = E' (e0 + kappa y)
+    /// ```
+    pub fn bending(&self, model: &Model, forces: &SectionForces, limits: &[Option<RockLimits>]) -> Option<(f64, usize, Pair)> {
+        let half = 0.5 * self.length_m();
+        let stiffness = |layer: usize| {
+            let rock = &model.rocks[model.layers[layer].rock];
+            match model.layers[layer].carries {
+                Carries::LoadAndTension => rock.youngs_modulus_pa / (1.0 - rock.poissons_ratio.powi(2)),
+                Carries::LoadOnly => 0.0,
+            }
+        };
+        let mut k = [0.0; 3];
+        for piece in &self.pieces {
+            let (a, b) = (piece.along_m[0] - half, piece.along_m[1] - half);
+            let e = stiffness(piece.layer);
+            k[0] += e * (b - a);
+            k[1] += e * (b * b - a * a) / 2.0;
+            k[2] += e * (b.powi(3) - a.powi(3)) / 3.0;
+        }
+        let det = k[0] * k[2] - k[1] * k[1];
+        if !(0.0 < det) {
+            return None;
+        }
+        let e0 = (forces.axial_n_per_m * k[2] - forces.moment_n * k[1]) / det;
+        let kappa = (forces.moment_n * k[0] - forces.axial_n_per_m * k[1]) / det;
+        let mut worst: Option<(f64, usize, Pair)> = None;
+        for piece in &self.pieces {
+            let Some(limit) = limits[model.layers[piece.layer].rock] else { continue };
+            for along in piece.along_m {
+                let stress = stiffness(piece.layer) * (e0 + kappa * (along - half));
+                let pair = Pair { demand_pa: stress, capacity_pa: limit.tensile_strength_pa, beyond_apex: false };
+                if worst.is_none_or(|w| ratio(&w.2) < ratio(&pair)) {
+                    worst = Some((along, piece.layer, pair));
+                }
+            }
+        }
+        worst
+    }
+
+    /// Mean shear over the line against the mean of `c' + sigma' tan phi'`.
+    ///
+    /// The normal force is that of equilibrium; the stress field only splits it among the layers:
+    /// `N_i = N_i,field + (N - sum N_field) l_i / l`. A layer without strength, or pulled beyond its apex, adds nothing.
+    pub fn shear(&self, model: &Model, forces: &SectionForces, coefficients: &[f64], limits: &[Option<RockLimits>], coarse: bool) -> Pair {
+        let length = self.length_m();
+        let field = |piece: &Piece| {
+            let stress = if coarse { &piece.normal_coarse_pa } else { &piece.normal_pa };
+            coefficients.iter().zip(stress).map(|(c, s)| c * s).sum::<f64>()
+        };
+        let total: f64 = self.pieces.iter().map(|p| field(p) * (p.along_m[1] - p.along_m[0])).sum();
+        let correction = (forces.axial_n_per_m - total) / length;
+        let strength = |piece: &Piece| {
+            let limit = limits[model.layers[piece.layer].rock]?;
+            let compression = -(field(piece) + correction);
+            Some((limit.cohesion_pa + compression * limit.tan_friction).max(0.0) * (piece.along_m[1] - piece.along_m[0]))
+        };
+        let capacity: f64 = self.pieces.iter().filter_map(strength).sum();
+        Pair { demand_pa: forces.shear_n_per_m / length, capacity_pa: capacity / length, beyond_apex: false }
+    }
+}
+
+/// Order of fibres: utilization, or the sign of the demand where nothing pulls.
+fn ratio(pair: &Pair) -> f64 {
+    if 0.0 < pair.capacity_pa { pair.demand_pa / pair.capacity_pa } else { pair.demand_pa.signum() * f64::MAX }
+}
