@@ -1,2 +1,9 @@
 //! The `brinkline` binary.
-fn main() {}
+use std::process::ExitCode;
+
+use brinkline::args::Cli;
+use clap::Parser;
+
+fn main() -> ExitCode {
+    brinkline::commands::run(&Cli::parse()).into()
+}

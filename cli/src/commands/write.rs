@@ -1,0 +1,72 @@
+//! Which command writes which files.
+use std::path::Path;
+
+use super::analysis::{Results, Scope};
+use super::load::Loaded;
+use crate::exit::Exit;
+use crate::output::folder::{FolderError, Staging};
+use crate::output::{Provenance, csv, json};
+use crate::progress::Reporter;
+
+/// Everything the files are made from.
+#[derive(Debug)]
+pub(crate) struct Job<'a> {
+    /// Command.
+    pub scope: Scope,
+    /// Results with fields.
+    pub results: &'a Results,
+    /// Model with the files it came from.
+    pub loaded: &'a Loaded,
+    /// Provenance.
+    pub provenance: &'a Provenance,
+    /// A firm's own letterhead template.
+    pub letterhead: Option<String>,
+    /// Three-node triangles in fields files.
+    pub linear_triangles: bool,
+}
+
+/// Why nothing was written.
+#[derive(Debug, thiserror::Error)]
+pub(crate) enum WriteError {
+    /// The folder.
+    #[error(transparent)]
+    Folder(#[from] FolderError),
+    /// A number that is none.
+    #[error(transparent)]
+    NotFinite(#[from] json::NotFinite),
+    /// The table.
+    #[error("cannot write `depths.csv`: {0}")]
+    Csv(#[from] ::csv::Error),
+}
+
+impl WriteError {
+    /// Exit code of the run.
+    pub(crate) fn exit(&self) -> Exit {
+        match self {
+            Self::NotFinite(_) => Exit::Analysis,
+            Self::Folder(_) | Self::Csv(_) => Exit::File,
+        }
+    }
+}
+
+/// Writes all files of the command and makes them appear. Returns a line that says what was written.
+pub(crate) fn all(job: &Job<'_>, mut staging: Staging, _reporter: &Reporter) -> Result<String, WriteError> {
+    let outcome = &job.results.outcome;
+    if job.scope != Scope::Mesh {
+        staging.write("summary.json", json::summary(outcome, job.provenance)?.as_bytes())?;
+        staging.write("depths.csv", &csv::depths(outcome)?)?;
+    }
+    for (name, bytes) in &job.loaded.files {
+        staging.write(name, bytes)?;
+    }
+    let shown = staging.target().display().to_string();
+    let names = staging.commit()?;
+    Ok(format!("wrote {} files to {shown}", names.len()))
+}
+
+/// Reads the letterhead template; the error is a sentence for people.
+#[expect(clippy::disallowed_methods, reason = "the boundary reads files")]
+pub(crate) fn letterhead(path: Option<&Path>) -> Result<Option<String>, String> {
+    path.map(|path| std::fs::read_to_string(path).map_err(|error| format!("cannot read the letterhead `{}`: {error}", path.display())))
+        .transpose()
+}
