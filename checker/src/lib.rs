@@ -4,3 +4,4 @@
 pub mod diagnostic;
 pub mod model;
 pub mod outcome;
+pub mod strength;
