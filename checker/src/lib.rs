@@ -4,4 +4,5 @@
 pub mod diagnostic;
 pub mod model;
 pub mod outcome;
+pub mod outlook;
 pub mod strength;

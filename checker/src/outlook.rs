@@ -1,0 +1,13 @@
+//! When, how likely, how far back: from demands and strengths with their uncertainty to years, probability and setback.
+//!
+//! ```text
+//! Variables ──► DemandModel ──► critical depths of samples ──► growth by year ──► probability by year, setback, triggers
+//!                     └──────► design points (FORM) ──► importance sampling ──┘
+//! ```
+//!
+//! A pure function of its input: every sample has a random stream of its own, sums run in index order, so that the same seed
+//! gives the same bits for any number of threads. Equations (7.x) stand in `docs/theory.md`.
+pub mod form;
+pub mod normal;
+pub mod reliability;
+pub mod variables;
