@@ -2,6 +2,7 @@
 //!
 //! A pure function of its input: no file, clock, environment or printing. SI units, tension positive, x landward, y up.
 pub mod diagnostic;
+pub mod lab;
 pub mod model;
 pub mod outcome;
 pub mod outlook;
