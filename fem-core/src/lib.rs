@@ -1,5 +1,17 @@
 //! Plane-strain finite elements. SI units, tension positive, x landward, y up, angles in radians.
 //!
 //! Knows no rock, cliff, layer, file, clock or unit but SI.
-pub mod assembly;
+//!
+//! ```text
+//! Mesh + Elastic per region + Supports -> Problem -> System (factored) -> Displacements per load case
+//! Displacements -> raw stress -> Recovery -> recovered stress -> means, errors, resultants
+//! ```
 pub mod mesh;
+
+pub mod elasticity;
+pub mod element;
+pub mod quadrature;
+pub mod tensor;
+
+pub mod assembly;
+pub mod supports;
