@@ -3,10 +3,12 @@
 //! `ModelInput` (what the file says) and `Model` (what passed [`check`]) share these types: a field that a file may leave
 //! out and that has a default is filled by the reader, which lists the key in [`Model::defaults_used`]; an `Option` stays
 //! `None` where leaving the key out has a meaning of its own.
+mod check;
 mod coast;
 mod rock;
 mod site;
 
+pub use check::check;
 pub use coast::{
     AcceptedChance, Asset, Below, CrsLocation, DatedDepth, DeepeningRate, EdgeRetreat, Evidence, EvidenceKind, Extent, Outlook, Remedy,
     RemedyKind, SeaLevelRise, StartsCarrying, Storms,

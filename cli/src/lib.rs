@@ -4,7 +4,10 @@
 //! `main.rs` only calls [`commands::run`]; other front ends may call the parts.
 pub mod args;
 pub mod commands;
+pub mod diagnostics;
 pub mod exit;
 pub mod interrupt;
+pub mod model_file;
 pub mod output;
 pub mod progress;
+pub mod survey_csv;
