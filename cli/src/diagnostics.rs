@@ -95,10 +95,13 @@ fn short(findings: &Findings) -> String {
             one.also.iter().filter_map(|place| findings.position(place)).map(|at| format!("line {}", at.line)).collect();
         let mut line = format!("{head}: {}: {}", severity_word(diagnostic.severity), diagnostic.message);
         if !also.is_empty() {
-            line += &format!(" (see also {})", also.join(", "));
+            line += " (see also ";
+            line += &also.join(", ");
+            line += ")";
         }
         if let Some(hint) = &diagnostic.hint {
-            line += &format!("; {hint}");
+            line += "; ";
+            line += hint;
         }
         text += &clean(&line);
         text.push('\n');
@@ -110,4 +113,15 @@ fn short(findings: &Findings) -> String {
 fn more(findings: &Findings) -> String {
     let n_more = findings.list.len().saturating_sub(MOST_SHOWN);
     if n_more == 0 { String::new() } else { format!("{n_more} more findings are not shown\n") }
+}
+
+/// Writes findings to standard error; colors only on a terminal and without NO_COLOR.
+pub(crate) fn show(findings: &Findings, form: DiagnosticsForm) {
+    use std::io::Write;
+    if findings.list.is_empty() && form != DiagnosticsForm::Json {
+        return;
+    }
+    let mut stderr = anstream::stderr().lock();
+    // A closed standard error is no reason to stop.
+    let _ = stderr.write_all(render(findings, form, true).as_bytes());
 }

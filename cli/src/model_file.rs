@@ -20,13 +20,13 @@ pub use build::ExtraFile;
 use crate::diagnostics::{Findings, Source};
 use build::Build;
 use checker::diagnostic::Diagnostic;
-use checker::model::Model;
+use checker::model::{Groundwater, Model, SeaLevel};
 use collect::{Collector, Places};
 use files::FileFault;
 use sha2::{Digest, Sha256};
 use std::path::Path;
 use std::sync::Arc;
-use walk::{At, Walk};
+use walk::Walk;
 
 /// A model that was read and checked, with what came with it.
 #[derive(Debug, Clone)]
@@ -104,7 +104,7 @@ pub fn from_text(text: String, name: &str, folder: &Path) -> Result<LoadedModel,
     let mut build = Build { collector: &mut collector, folder, defaults_used, extra_files: Vec::new(), unreadable: false };
     let mut model = build.model(&file);
     let (extra_files, unreadable) = (build.extra_files, build.unreadable);
-    model.defaults_used = build.defaults_used;
+    model.defaults_used = with_effect(build.defaults_used, &model);
     for diagnostic in checker::model::check(&model) {
         collector.add(diagnostic);
     }
@@ -117,6 +117,22 @@ pub fn from_text(text: String, name: &str, folder: &Path) -> Result<LoadedModel,
     Ok(LoadedModel { model, warnings: findings, text, sha256, file_name: name.to_owned(), extra_files, places })
 }
 
+/// The defaults that matter: those about water only where there is water, those about surcharges only where there are any.
+fn with_effect(mut defaults_used: Vec<String>, model: &Model) -> Vec<String> {
+    let has_table = model.situations.iter().any(|situation| matches!(situation.groundwater, Some(Groundwater::Table(_))));
+    let has_sea = model.situations.iter().any(|situation| situation.sea_level != SeaLevel::OffTheFace);
+    defaults_used.retain(|line| {
+        let key = line.split(" = ").next().and_then(|path| path.rsplit('.').next()).unwrap_or_default();
+        match key {
+            "saturated_unit_weight_kn_m3" | "water_unit_weight_kn_m3" | "above_table" => has_table,
+            "sea_unit_weight_kn_m3" => has_sea,
+            "surcharges" => !model.surcharges.is_empty(),
+            _ => true,
+        }
+    });
+    defaults_used
+}
+
 fn failure(fault: &FileFault, name: &str) -> Failure {
     let sources = Arc::new(vec![Source { name: name.to_owned(), text: String::new() }]);
     let list = vec![crate::diagnostics::Located { diagnostic: fault.diagnostic(""), place: None, also: Vec::new() }];
@@ -124,5 +140,6 @@ fn failure(fault: &FileFault, name: &str) -> Failure {
 }
 
 fn hexadecimal(bytes: &[u8]) -> String {
-    bytes.iter().map(|byte| format!("{byte:02x}")).collect()
+    const DIGITS: &[u8; 16] = b"0123456789abcdef";
+    bytes.iter().flat_map(|byte| [byte >> 4, byte & 15]).map(|half| char::from(DIGITS[usize::from(half)])).collect()
 }

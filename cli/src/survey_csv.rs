@@ -21,16 +21,18 @@ struct Columns {
 }
 
 /// The points of a surface; `at` is the key path that names the file. After an error the list is empty.
-pub(crate) fn read(name: &str, text: String, at: &str, collector: &mut Collector) -> Vec<SurfacePoint> {
+pub(crate) fn read(name: &str, text: &str, at: &str, collector: &mut Collector) -> Vec<SurfacePoint> {
     let source = collector.sources.len();
     let before = collector.n_errors();
-    collector.sources.push(Source { name: name.to_owned(), text: text.clone() });
-    let mut lines = Lines::new(&text);
+    collector.sources.push(Source { name: name.to_owned(), text: text.to_owned() });
+    let mut lines = Lines::new(text);
     let Some((header, span)) = lines.next() else {
-        collector.add(Diagnostic::error("csv.empty", at, format!("{:?} is empty", clip(name, 80))).hint("the first line names the columns: x_m,z_m"));
+        collector.add(
+            Diagnostic::error("csv.empty", at, format!("{:?} is empty", clip(name, 80))).hint("the first line names the columns: x_m,z_m"),
+        );
         return Vec::new();
     };
-    let Some(columns) = columns(header, at, &span, source, collector) else {
+    let Some(columns) = columns(&header, at, &span, source, collector) else {
         return Vec::new();
     };
     let mut points = Vec::new();
@@ -42,10 +44,10 @@ pub(crate) fn read(name: &str, text: String, at: &str, collector: &mut Collector
             break;
         }
         collector.places.insert(&nth("section.surface", i_row), source, span.clone());
-        match point(row, columns) {
+        match point(&row, columns) {
             Ok(point) => points.push(point),
             Err(fault) => {
-                let place = fault.field.map_or(span.clone(), |i_field| field_span(&text, &span, i_field));
+                let place = fault.field.map_or(span.clone(), |i_field| field_span(text, &span, i_field));
                 let message = format!("row {}: {}", i_row + 2, fault.message);
                 collector.add_at(Diagnostic::error(fault.code, nth("section.surface", i_row), message).hint(fault.hint), source, place);
                 if collector.n_errors() > before + MOST_FINDINGS {
@@ -72,7 +74,7 @@ impl<'t> Lines<'t> {
     }
 }
 
-impl<'t> Iterator for Lines<'t> {
+impl Iterator for Lines<'_> {
     type Item = (Vec<String>, Range<usize>);
 
     fn next(&mut self) -> Option<Self::Item> {
@@ -98,7 +100,7 @@ fn fields(line: &str) -> Vec<String> {
     }
 }
 
-fn columns(header: Vec<String>, at: &str, span: &Range<usize>, source: usize, collector: &mut Collector) -> Option<Columns> {
+fn columns(header: &[String], at: &str, span: &Range<usize>, source: usize, collector: &mut Collector) -> Option<Columns> {
     let line = header.join(",");
     let find = |key: &str| header.iter().position(|name| name.eq_ignore_ascii_case(key));
     let (x_m, z_m, how) = (find("x_m"), find("z_m"), find("how"));
@@ -128,7 +130,7 @@ struct Fault {
     hint: &'static str,
 }
 
-fn point(row: Vec<String>, columns: Columns) -> Result<SurfacePoint, Fault> {
+fn point(row: &[String], columns: Columns) -> Result<SurfacePoint, Fault> {
     let most = columns.x_m.max(columns.z_m).max(columns.how.unwrap_or(0)) + 1;
     let least = columns.x_m.max(columns.z_m) + 1;
     if row.len() == 1 && row[0].contains(';') {
@@ -147,7 +149,12 @@ fn point(row: Vec<String>, columns: Columns) -> Result<SurfacePoint, Fault> {
         Some("inferred") => true,
         Some(other) => {
             let message = format!("column how: {:?} is neither measured nor inferred", clip(other, 30));
-            return Err(Fault { code: "csv.word", field: columns.how, message, hint: "write measured or inferred, or leave the field empty" });
+            return Err(Fault {
+                code: "csv.word",
+                field: columns.how,
+                message,
+                hint: "write measured or inferred, or leave the field empty",
+            });
         }
     };
     Ok(SurfacePoint { x_m, z_m, inferred })
@@ -156,17 +163,18 @@ fn point(row: Vec<String>, columns: Columns) -> Result<SurfacePoint, Fault> {
 fn number(field: &str, i_field: usize, column: &str) -> Result<f64, Fault> {
     let fault = |message: String, hint: &'static str| Fault { code: "csv.number", field: Some(i_field), message, hint };
     match field.parse::<f64>() {
-        Ok(number) if !number.is_finite() => Err(fault(format!("column {column}: {field} cannot be used"), "leave the row out if the point was not measured")),
+        Ok(number) if !number.is_finite() => {
+            Err(fault(format!("column {column}: {field} cannot be used"), "leave the row out if the point was not measured"))
+        }
         Ok(number) if number.abs() > LARGEST_COORDINATE_M => Err(fault(
             format!("column {column}: {number} m is over the limit of {LARGEST_COORDINATE_M} m"),
             "coordinates count from a fixed mark near the cliff; grid coordinates belong in [location]",
         )),
         Ok(number) => Ok(number),
         Err(_) if field.is_empty() => Err(fault(format!("column {column} is empty"), "leave the row out if the point was not measured")),
-        Err(_) if field.replace(',', ".").parse::<f64>().is_ok() => Err(fault(
-            format!("column {column}: {:?} has a decimal comma", clip(field, 30)),
-            "write a decimal point",
-        )),
+        Err(_) if field.replace(',', ".").parse::<f64>().is_ok() => {
+            Err(fault(format!("column {column}: {:?} has a decimal comma", clip(field, 30)), "write a decimal point"))
+        }
         Err(_) => Err(fault(format!("column {column}: {:?} is not a number", clip(field, 30)), "write a plain number in m")),
     }
 }

@@ -38,4 +38,3 @@ fn range(values: impl Iterator<Item = f64>) -> Option<[f64; 2]> {
         Some([low, high]) => Some([f64::min(low, value), f64::max(high, value)]),
     })
 }
-

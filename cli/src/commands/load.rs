@@ -4,7 +4,9 @@ use std::path::Path;
 use checker::model::Model;
 
 use crate::args::DiagnosticsForm;
+use crate::diagnostics;
 use crate::exit::Exit;
+use crate::model_file::{self, LoadedModel};
 
 /// A model as read.
 #[derive(Debug, Clone)]
@@ -19,7 +21,16 @@ pub(crate) struct Loaded {
 ///
 /// # Errors
 /// [`Exit::File`] or [`Exit::ModelWrong`], after everything was said.
-pub(crate) fn load(path: &Path, _form: DiagnosticsForm) -> Result<Loaded, Exit> {
-    crate::progress::say(&format!("error: cannot read `{}`: reading models is not available yet", path.display()));
-    Err(Exit::File)
+pub(crate) fn load(path: &Path, form: DiagnosticsForm) -> Result<Loaded, Exit> {
+    match model_file::read(path) {
+        Ok(LoadedModel { model, warnings, text, file_name, extra_files, .. }) => {
+            diagnostics::show(&warnings, form);
+            let extra = extra_files.into_iter().map(|file| (file.file_name(), file.bytes));
+            Ok(Loaded { model, files: std::iter::once((file_name, text.into_bytes())).chain(extra).collect() })
+        }
+        Err(failure) => {
+            diagnostics::show(&failure.findings, form);
+            Err(if failure.unreadable { Exit::File } else { Exit::ModelWrong })
+        }
+    }
 }

@@ -80,7 +80,17 @@ pub(super) fn excerpt(text: &str, from: usize, to: usize) -> Excerpt {
 
 /// The same text with a visible stand-in for every control character, so that columns stay.
 fn printable(text: &str) -> String {
-    text.chars().map(|c| if c == '\t' { ' ' } else if c.is_control() || is_direction_mark(c) { '\u{fffd}' } else { c }).collect()
+    text.chars()
+        .map(|c| {
+            if c == '\t' {
+                ' '
+            } else if c.is_control() || is_direction_mark(c) {
+                '\u{fffd}'
+            } else {
+                c
+            }
+        })
+        .collect()
 }
 
 fn is_direction_mark(c: char) -> bool {

@@ -24,6 +24,13 @@ pub struct ExtraFile {
     pub bytes: Vec<u8>,
 }
 
+impl ExtraFile {
+    /// Its name without folders.
+    pub fn file_name(&self) -> String {
+        self.path.file_name().map_or_else(|| self.name.clone(), |name| name.to_string_lossy().into_owned())
+    }
+}
+
 /// The building on its way.
 #[derive(Debug)]
 pub(super) struct Build<'c> {
@@ -43,7 +50,7 @@ impl Build<'_> {
         let rocks: Vec<_> = file.named("rocks").iter().map(|(name, table)| self.rock(name, table)).collect();
         let layers = file.tables("layers").iter().map(|table| self.layer(table, &rock_names, &rocks)).collect();
         self.unique_names(file);
-        let surcharges: Vec<_> = file.tables("surcharges").iter().map(|table| self.surcharge(table)).collect();
+        let surcharges: Vec<_> = file.tables("surcharges").iter().map(water::surcharge).collect();
         let situations = self.situations(file);
         let location = file.table("location").map(coast::location);
         let joint_sets = file.tables("joint_sets").iter().map(|table| self.joint_set(table, &rock_names, location.as_ref())).collect();
@@ -59,14 +66,14 @@ impl Build<'_> {
             situations,
             surcharges,
             undercut: self.undercut(file.table("undercut")),
-            checks: self.checks(file.table("checks")),
+            checks: site::checks(file.table("checks")),
             outlook: self.outlook(file),
             evidence: file.tables("evidence").iter().map(|table| self.evidence(table, &rock_names)).collect(),
-            below: self.below(file.table("below")),
+            below: coast::below(file.table("below")),
             remedies: self.remedies(file, &rock_names),
             probes: file.tables("probes").iter().map(site::probe).collect(),
             cuts: file.tables("cuts").iter().map(site::cut).collect(),
-            extent: self.extent(file.table("extent")),
+            extent: site::extent(file.table("extent")),
             location,
             defaults_used: Vec::new(),
         }

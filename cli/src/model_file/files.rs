@@ -56,7 +56,8 @@ pub(crate) fn bytes(path: &Path, n_largest: u64) -> Result<Vec<u8>, FileFault> {
         return Err(FileFault::Wrong {
             code: "file.too-large",
             message: format!("{name} is larger than the limit of {} MB", n_largest >> 20),
-            hint: "check that it is the right file; put a long profile into a CSV file of its own, thinned to what the section needs".into(),
+            hint: "check that it is the right file; put a long profile into a CSV file of its own, thinned to what the section needs"
+                .into(),
         });
     }
     Ok(bytes)
@@ -79,7 +80,7 @@ pub(crate) fn text(bytes: &[u8], name: &str) -> Result<String, FileFault> {
         Ok(text) => Ok(text.to_owned()),
         Err(error) => {
             let n_good = error.valid_up_to();
-            let line = bytes[..n_good].iter().filter(|b| **b == b'\n').count() + 1;
+            let line = bytes[..n_good].split(|b| *b == b'\n').count();
             let column = n_good - bytes[..n_good].iter().rposition(|b| *b == b'\n').map_or(0, |i| i + 1) + 1;
             Err(wrong(
                 format!("{name} is not UTF-8 text: line {line}, byte {column} of the line, is 0x{:02x}", bytes[n_good]),
@@ -121,9 +122,8 @@ pub(crate) fn inside(folder: &Path, name: &str) -> Result<PathBuf, FileFault> {
         }
     }
     let path = folder.join(name);
-    let unreadable = |error: std::io::Error| {
-        FileFault::Unreadable(format!("cannot read {:?}: {}", crate::diagnostics::clip(name, 120), reason(&error)))
-    };
+    let unreadable =
+        |error: std::io::Error| FileFault::Unreadable(format!("cannot read {:?}: {}", crate::diagnostics::clip(name, 120), reason(&error)));
     let real = path.canonicalize().map_err(unreadable)?;
     let real_folder = folder.canonicalize().map_err(unreadable)?;
     if !real.starts_with(&real_folder) {

@@ -5,8 +5,8 @@ mod rocks;
 mod site;
 mod water;
 
-use super::kinds::{Kind, Limits, Quantity, Shape, Unit, default, optional, required};
 use super::kinds::{Field, Preset};
+use super::kinds::{Kind, Limits, Quantity, Shape, Unit, default, optional, required};
 
 /// Largest distance of any point from the origin: coordinates count from a mark near the cliff, not from a country's grid.
 pub(crate) const LARGEST_COORDINATE_M: f64 = 100_000.0;
@@ -37,7 +37,11 @@ pub(crate) static MODEL: Shape = Shape {
         optional("joint_sets", Kind::Tables(&rocks::JOINT_SET), "planes of weakness throughout the named rocks"),
         optional("discontinuity_survey", Kind::Table(&rocks::DISCONTINUITY_SURVEY), "the statement that no such plane was found"),
         optional("cracks", Kind::Tables(&site::CRACK), "seen cracks, each with its own place"),
-        optional("situations", Kind::Tables(&water::SITUATION), "what may act together; left out, one dry situation named \"ordinary\" is taken"),
+        optional(
+            "situations",
+            Kind::Tables(&water::SITUATION),
+            "what may act together; left out, one dry situation named \"ordinary\" is taken",
+        ),
         optional("surcharges", Kind::Tables(&water::SURCHARGE), "strip loads on the ground"),
         required("undercut", Kind::Table(&site::UNDERCUT), "the undercut and how it deepens"),
         CHECKS,

@@ -2,7 +2,7 @@
 
 /// Unit in which a number stands in the file.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub enum Unit {
+pub(crate) enum Unit {
     /// A ratio or a count.
     One,
     /// Metres.
@@ -31,7 +31,7 @@ pub enum Unit {
 
 impl Unit {
     /// The unit as people write it; empty for a ratio.
-    pub const fn symbol(self) -> &'static str {
+    pub(crate) const fn symbol(self) -> &'static str {
         match self {
             Self::One => "",
             Self::Meter => "m",
@@ -49,7 +49,7 @@ impl Unit {
     }
 
     /// The value in SI units (angles in rad; years stay years).
-    pub fn to_si(self, value: f64) -> f64 {
+    pub(crate) fn to_si(self, value: f64) -> f64 {
         match self {
             Self::One | Self::Meter | Self::MeterPerYear | Self::Year | Self::PerYear => value,
             Self::Degree => value.to_radians(),
@@ -61,43 +61,43 @@ impl Unit {
 
 /// Limits of a number, in the file's unit.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Limits {
+pub(crate) struct Limits {
     /// Lower limit and whether it is allowed itself.
-    pub min: Option<(f64, bool)>,
+    pub(crate) min: Option<(f64, bool)>,
     /// Upper limit and whether it is allowed itself.
-    pub max: Option<(f64, bool)>,
+    pub(crate) max: Option<(f64, bool)>,
 }
 
 impl Limits {
     /// Above `min`, which is not allowed itself.
-    pub const fn over(min: f64) -> Self {
+    pub(crate) const fn over(min: f64) -> Self {
         Self { min: Some((min, false)), max: None }
     }
 
     /// `min` or more.
-    pub const fn at_least(min: f64) -> Self {
+    pub(crate) const fn at_least(min: f64) -> Self {
         Self { min: Some((min, true)), max: None }
     }
 
     /// And below `max`, which is not allowed itself.
-    pub const fn under(self, max: f64) -> Self {
+    pub(crate) const fn under(self, max: f64) -> Self {
         Self { min: self.min, max: Some((max, false)) }
     }
 
     /// And `max` or less.
-    pub const fn at_most(self, max: f64) -> Self {
+    pub(crate) const fn at_most(self, max: f64) -> Self {
         Self { min: self.min, max: Some((max, true)) }
     }
 
     /// Whether a finite value keeps the limits.
-    pub fn allow(self, value: f64) -> bool {
+    pub(crate) fn allow(self, value: f64) -> bool {
         let above = self.min.is_none_or(|(min, included)| value > min || (included && value >= min));
         let below = self.max.is_none_or(|(max, included)| value < max || (included && value <= max));
         above && below
     }
 
     /// "over 0 and at most 90 degrees".
-    pub fn describe(self, unit: Unit) -> String {
+    pub(crate) fn describe(self, unit: Unit) -> String {
         let low = self.min.map(|(min, included)| format!("{} {min}", if included { "at least" } else { "over" }));
         let high = self.max.map(|(max, included)| format!("{} {max}", if included { "at most" } else { "under" }));
         let text = [low, high].into_iter().flatten().collect::<Vec<_>>().join(" and ");
@@ -107,18 +107,18 @@ impl Limits {
 
 /// A value that is allowed but looks as if it were in another unit.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Suspicion {
+pub(crate) struct Suspicion {
     /// Values from here (included), in the file's unit.
-    pub from: f64,
+    pub(crate) from: f64,
     /// To here (excluded).
-    pub to: f64,
+    pub(crate) to: f64,
     /// What it may have been meant to be.
-    pub likely: &'static str,
+    pub(crate) likely: &'static str,
 }
 
 /// Distribution that an uncertain number has when none is named.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub enum Family {
+pub(crate) enum Family {
     /// Lognormal: strengths and other positive quantities.
     Lognormal,
     /// Normal: unit weights, ratings.
@@ -127,7 +127,7 @@ pub enum Family {
 
 impl Family {
     /// The word of the file.
-    pub const fn word(self) -> &'static str {
+    pub(crate) const fn word(self) -> &'static str {
         match self {
             Self::Lognormal => "lognormal",
             Self::Normal => "normal",
@@ -137,30 +137,30 @@ impl Family {
 
 /// A number's unit, limits and suspicious ranges.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Quantity {
+pub(crate) struct Quantity {
     /// Unit in the file.
-    pub unit: Unit,
+    pub(crate) unit: Unit,
     /// Limits in that unit.
-    pub limits: Limits,
+    pub(crate) limits: Limits,
     /// Ranges that draw a warning.
-    pub suspicions: &'static [Suspicion],
+    pub(crate) suspicions: &'static [Suspicion],
 }
 
 impl Quantity {
     /// A quantity without suspicious ranges.
-    pub const fn new(unit: Unit, limits: Limits) -> Self {
+    pub(crate) const fn new(unit: Unit, limits: Limits) -> Self {
         Self { unit, limits, suspicions: &[] }
     }
 
     /// The same with suspicious ranges.
-    pub const fn suspect(self, suspicions: &'static [Suspicion]) -> Self {
+    pub(crate) const fn suspect(self, suspicions: &'static [Suspicion]) -> Self {
         Self { unit: self.unit, limits: self.limits, suspicions }
     }
 }
 
 /// What a key may hold.
 #[derive(Debug, Clone, Copy)]
-pub enum Kind {
+pub(crate) enum Kind {
     /// A number.
     Number(Quantity),
     /// A number that may be uncertain.
@@ -201,20 +201,22 @@ pub enum Kind {
 
 /// Whether a key must be there, and what holds if it is not.
 #[derive(Debug, Clone, Copy)]
-pub enum Need {
+pub(crate) enum Need {
     /// Must be there.
     Required,
     /// May be left out, with a meaning of its own; nothing is assumed in its place.
     Optional,
     /// Left out, it is this value, written as in the file.
     Default(Preset),
+    /// Left out, it is this value, which adds nothing to the model; not listed among the defaults used.
+    Neutral(Preset),
     /// Left out, it follows from other data in this way.
     Derived(&'static str),
 }
 
 /// A default value in the file's unit.
 #[derive(Debug, Clone, Copy)]
-pub enum Preset {
+pub(crate) enum Preset {
     /// A number.
     Number(f64),
     /// A whole number.
@@ -227,71 +229,76 @@ pub enum Preset {
 
 /// One key.
 #[derive(Debug, Clone, Copy)]
-pub struct Field {
+pub(crate) struct Field {
     /// The key.
-    pub key: &'static str,
+    pub(crate) key: &'static str,
     /// What it may hold.
-    pub kind: Kind,
+    pub(crate) kind: Kind,
     /// Whether it must be there.
-    pub need: Need,
+    pub(crate) need: Need,
     /// One line for the reference and the schema, without a full stop.
-    pub doc: &'static str,
+    pub(crate) doc: &'static str,
 }
 
 /// Keys of which exactly one (or at most one) may be there.
 #[derive(Debug, Clone, Copy)]
-pub struct OneOf {
+pub(crate) struct OneOf {
     /// The keys.
-    pub keys: &'static [&'static str],
+    pub(crate) keys: &'static [&'static str],
     /// Whether one of them must be there.
-    pub required: bool,
+    pub(crate) required: bool,
     /// What they are sources of.
-    pub what: &'static str,
+    pub(crate) what: &'static str,
 }
 
 /// Keys of one table.
 #[derive(Debug)]
-pub struct Shape {
+pub(crate) struct Shape {
     /// What the table is, one line without a full stop.
-    pub doc: &'static str,
+    pub(crate) doc: &'static str,
     /// Its keys, in the order of the reference.
-    pub fields: &'static [Field],
+    pub(crate) fields: &'static [Field],
     /// Keys that exclude each other.
-    pub one_of: &'static [OneOf],
+    pub(crate) one_of: &'static [OneOf],
     /// Keys that must come together.
-    pub together: &'static [&'static [&'static str]],
+    pub(crate) together: &'static [&'static [&'static str]],
     /// Frequent wrong keys, each with what to write instead.
-    pub mistakes: &'static [(&'static str, &'static str)],
+    pub(crate) mistakes: &'static [(&'static str, &'static str)],
 }
 
 impl Shape {
     /// A table without rules among its keys.
-    pub const fn new(doc: &'static str, fields: &'static [Field]) -> Self {
+    pub(crate) const fn new(doc: &'static str, fields: &'static [Field]) -> Self {
         Self { doc, fields, one_of: &[], together: &[], mistakes: &[] }
     }
 
     /// The field of that key.
-    pub fn field(&self, key: &str) -> Option<&'static Field> {
+    pub(crate) fn field(&self, key: &str) -> Option<&'static Field> {
         self.fields.iter().find(|field| field.key == key)
     }
 }
 
 /// A key that must be there.
-pub const fn required(key: &'static str, kind: Kind, doc: &'static str) -> Field {
+pub(crate) const fn required(key: &'static str, kind: Kind, doc: &'static str) -> Field {
     Field { key, kind, need: Need::Required, doc }
 }
 
 /// A key that may be left out.
-pub const fn optional(key: &'static str, kind: Kind, doc: &'static str) -> Field {
+pub(crate) const fn optional(key: &'static str, kind: Kind, doc: &'static str) -> Field {
     Field { key, kind, need: Need::Optional, doc }
 }
 
 /// A key with a default value.
-pub const fn default(key: &'static str, kind: Kind, preset: Preset, doc: &'static str) -> Field {
+pub(crate) const fn default(key: &'static str, kind: Kind, preset: Preset, doc: &'static str) -> Field {
     Field { key, kind, need: Need::Default(preset), doc }
 }
 
+/// A key that adds nothing where it is left out.
+pub(crate) const fn neutral(key: &'static str, kind: Kind, preset: Preset, doc: &'static str) -> Field {
+    Field { key, kind, need: Need::Neutral(preset), doc }
+}
+
 /// A key whose default follows from other data.
-pub const fn derived(key: &'static str, kind: Kind, how: &'static str, doc: &'static str) -> Field {
+pub(crate) const fn derived(key: &'static str, kind: Kind, how: &'static str, doc: &'static str) -> Field {
     Field { key, kind, need: Need::Derived(how), doc }
 }

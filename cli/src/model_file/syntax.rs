@@ -19,7 +19,8 @@ pub(super) fn parse<'t>(text: &'t str, collector: &mut Collector) -> Spanned<DeT
         let message = format!("this is not valid TOML: {}", first_line(error.message()));
         let duplicate = error.message().contains("duplicate key");
         let diagnostic = if duplicate {
-            Diagnostic::error("key.twice", "", "this key or table is written twice").hint("keep one of the two; a list of tables is written [[name]]")
+            Diagnostic::error("key.twice", "", "this key or table is written twice")
+                .hint("keep one of the two; a list of tables is written [[name]]")
         } else {
             Diagnostic::error("file.syntax", "", message)
         };
@@ -55,7 +56,9 @@ fn hint(line: &str, message: &str) -> Option<String> {
             return Some("text stands in quotes: key = \"text\"".into());
         }
         let unit = value.trim_start_matches(|c: char| c.is_ascii_digit() || matches!(c, '.' | '-' | '+' | '_' | ' '));
-        if value.starts_with(|c: char| c.is_ascii_digit() || c == '-') && unit.starts_with(|c: char| c.is_alphabetic() || c == '°' || c == '%') {
+        if value.starts_with(|c: char| c.is_ascii_digit() || c == '-')
+            && unit.starts_with(|c: char| c.is_alphabetic() || c == '°' || c == '%')
+        {
             return Some("write the number without its unit; the unit is in the name of the key".into());
         }
         let key = short.split('=').next().unwrap_or_default().trim();

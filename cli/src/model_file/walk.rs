@@ -140,17 +140,14 @@ impl Walk<'_> {
         for (name, entry) in tables {
             let clean_name = clean(name.get_ref());
             let at = at.name(&clean_name);
-            match entry.get_ref() {
-                DeValue::Table(table) => {
-                    let span = if entry.span().is_empty() { name.span() } else { entry.span() };
-                    let table = self.table(shape, table, &at, &span);
-                    read.push((clean_name, table));
-                }
-                _ => {
-                    let hint = format!("every rock has a table of its own with its name: [{}]", at.path);
-                    self.wrong_kind(kind, &at, entry, Some(hint));
-                }
-            }
+            let DeValue::Table(table) = entry.get_ref() else {
+                let hint = format!("every rock has a table of its own with its name: [{}]", at.path);
+                self.wrong_kind(kind, &at, entry, Some(hint));
+                continue;
+            };
+            let span = if entry.span().is_empty() { name.span() } else { entry.span() };
+            let table = self.table(shape, table, &at, &span);
+            read.push((clean_name, table));
         }
         Val::Named(read)
     }
@@ -161,6 +158,7 @@ impl Walk<'_> {
         match field.need {
             Need::Required => self.missing(field.key, field.doc, &at, span),
             Need::Optional => {}
+            Need::Neutral(preset) => read.set(field.key, preset_value(preset, &field.kind).0),
             Need::Derived(how) => self.defaults_used.push(format!("{} = {how}", at.path)),
             Need::Default(preset) => {
                 let (value, text) = preset_value(preset, &field.kind);
@@ -221,7 +219,8 @@ impl Walk<'_> {
             for key in *together {
                 if let (Some(given), false) = (given, table.contains_key(*key)) {
                     let message = format!("{given} is given without {key}");
-                    let diagnostic = Diagnostic::error("key.missing", at.key(key).path, message).hint(format!("add {key}, or leave {given} out"));
+                    let diagnostic =
+                        Diagnostic::error("key.missing", at.key(key).path, message).hint(format!("add {key}, or leave {given} out"));
                     let place = table.get(*given).map_or_else(|| self.header(span), Spanned::span);
                     self.collector.add_at(diagnostic, 0, place);
                 }

@@ -14,11 +14,16 @@ pub(super) fn check(model: &Model, findings: &mut Vec<Diagnostic>) {
         match &layer.base {
             None if !is_last => {
                 let message = format!("layer {} of {n_layers} has no base", i + 1);
-                findings.push(Diagnostic::error("layers.no-base", at.clone(), message).hint("add the level of its base: base = …; only the last layer has none"));
+                findings.push(
+                    Diagnostic::error("layers.no-base", at.clone(), message)
+                        .hint("add the level of its base: base = …; only the last layer has none"),
+                );
             }
             Some(_) if is_last => {
                 let message = "the last layer has a base, but nothing lies below it";
-                findings.push(Diagnostic::error("layers.last-base", format!("{at}.base"), message).hint("leave base out, or add the layer below"));
+                findings.push(
+                    Diagnostic::error("layers.last-base", format!("{at}.base"), message).hint("leave base out, or add the layer below"),
+                );
             }
             _ => {}
         }
@@ -43,7 +48,9 @@ fn contact(model: &Model, base: &ContactLine, at: &str, findings: &mut Vec<Diagn
         for (i, pair) in points.windows(2).enumerate() {
             if pair[0][0] >= pair[1][0] {
                 let message = format!("x does not grow from {} m to {} m along this contact", pair[0][0], pair[1][0]);
-                findings.push(Diagnostic::error("layers.contact-order", nth(at, i + 1), message).hint("list the points from the sea to the land"));
+                findings.push(
+                    Diagnostic::error("layers.contact-order", nth(at, i + 1), message).hint("list the points from the sea to the land"),
+                );
                 return;
             }
         }
@@ -65,8 +72,12 @@ fn contact(model: &Model, base: &ContactLine, at: &str, findings: &mut Vec<Diagn
         let hint = "layers are listed from the top down, and each base is a level above the datum";
         findings.push(Diagnostic::error("layers.outside", at, message).hint(hint));
     } else if all().all(|z| z < z_low - DEEPEST_HEIGHTS * (z_high - z_low)) {
-        let message = format!("the base of this layer lies more than {DEEPEST_HEIGHTS} cliff heights below the section, whose lowest point is at {z_low} m");
-        findings.push(Diagnostic::error("layers.outside", at, message).hint("each base is a level above the datum, not a depth or a thickness"));
+        let message = format!(
+            "the base of this layer lies more than {DEEPEST_HEIGHTS} cliff heights below the section, whose lowest point is at {z_low} m"
+        );
+        findings.push(
+            Diagnostic::error("layers.outside", at, message).hint("each base is a level above the datum, not a depth or a thickness"),
+        );
     }
 }
 
@@ -95,7 +106,8 @@ fn never_appearing(model: &Model, findings: &mut Vec<Diagnostic>) {
         stations.extend(model.layers[..=i].iter().filter_map(|layer| layer.base.as_ref()).flat_map(corners_x_m));
         let appears = stations.iter().any(|&x_m| {
             // The lowest of the contacts above is the top of this layer, and the ground is above everything.
-            let top = model.layers[..i].iter().filter_map(|layer| layer.base.as_ref()).map(|above| level_m(above, x_m)).fold(z_high, f64::min);
+            let top =
+                model.layers[..i].iter().filter_map(|layer| layer.base.as_ref()).map(|above| level_m(above, x_m)).fold(z_high, f64::min);
             let thickness = top - level_m(base, x_m);
             thickness > 0.0 || thickness.is_nan()
         });

@@ -11,7 +11,9 @@ pub(super) fn check(model: &Model, findings: &mut Vec<Diagnostic>) {
     for (i, cut) in model.cuts.iter().enumerate() {
         let length_m = (cut.to_m[0] - cut.from_m[0]).hypot(cut.to_m[1] - cut.from_m[1]);
         if length_m < 1e-6 {
-            findings.push(Diagnostic::error("cuts.length", format!("{}.to", nth("cuts", i)), "the cut has no length").hint("from and to must differ"));
+            findings.push(
+                Diagnostic::error("cuts.length", format!("{}.to", nth("cuts", i)), "the cut has no length").hint("from and to must differ"),
+            );
         }
     }
     for (i, crack) in model.cracks.iter().enumerate() {
@@ -39,7 +41,9 @@ fn brow(model: &Model, findings: &mut Vec<Diagnostic>) {
     let away_m = away_m.fold(f64::INFINITY, f64::min);
     if away_m > BROW_TOLERANCE * (z_high - z_low) {
         let message = format!("the brow [{x}, {z}] lies {away_m:.2} m away from the surface");
-        findings.push(Diagnostic::error("section.brow", "section.brow", message).hint("name a point of the surface: the upper edge of the face"));
+        findings.push(
+            Diagnostic::error("section.brow", "section.brow", message).hint("name a point of the surface: the upper edge of the face"),
+        );
     }
 }
 

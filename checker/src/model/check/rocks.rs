@@ -79,7 +79,10 @@ fn wetting(model: &Model, i_rock: usize, rock: &Rock, at: &str, findings: &mut V
         layer.rock == i_rock && base < wet_to_m
     });
     if reaches_down {
-        let message = format!("the strengths of {:?} are those of dry specimens, but the rock reaches below {wet_to_m} m, where it is wet", rock.name);
+        let message = format!(
+            "the strengths of {:?} are those of dry specimens, but the rock reaches below {wet_to_m} m, where it is wet",
+            rock.name
+        );
         let hint = "add wet_factor: strength saturated over strength dry; weak limestones and sandstones lose some 20 to 50 %";
         findings.push(Diagnostic::error("rock.wet-factor", format!("{at}.tested"), message).hint(hint));
     }

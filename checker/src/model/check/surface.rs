@@ -40,7 +40,10 @@ fn direction(first: &SurfacePoint, last: &SurfacePoint, findings: &mut Vec<Diagn
         return false;
     }
     if first.z_m > last.z_m {
-        let message = format!("the surface starts at z = {} m and ends lower, at z = {} m: it seems to run from the land to the sea", first.z_m, last.z_m);
+        let message = format!(
+            "the surface starts at z = {} m and ends lower, at z = {} m: it seems to run from the land to the sea",
+            first.z_m, last.z_m
+        );
         let hint = "x grows landward and z upward: reverse the order of the points and change the sign of every x";
         findings.push(Diagnostic::error("surface.land-to-sea", nth("section.surface", 0), message).hint(hint));
         return false;
@@ -52,7 +55,8 @@ fn height(model: &Model, findings: &mut Vec<Diagnostic>) -> bool {
     let Some([low, high]) = z_range_m(model) else { return false };
     if high - low < LEAST_HEIGHT_M {
         let message = format!("the surface rises by {} m only; there is no cliff of at least {LEAST_HEIGHT_M} m", high - low);
-        findings.push(Diagnostic::error("surface.flat", "section.surface", message).hint("levels are in m; check the columns of the survey"));
+        findings
+            .push(Diagnostic::error("surface.flat", "section.surface", message).hint("levels are in m; check the columns of the survey"));
         return false;
     }
     true
@@ -93,9 +97,12 @@ fn crossings(surface: &[SurfacePoint], findings: &mut Vec<Diagnostic>) {
     }
     found.sort_unstable();
     for [a, b] in found.into_iter().take(MOST_CROSSINGS) {
-        let message = format!("the surface crosses or touches itself: from point {} to {}, and from point {} to {}", a + 1, a + 2, b + 1, b + 2);
+        let message =
+            format!("the surface crosses or touches itself: from point {} to {}, and from point {} to {}", a + 1, a + 2, b + 1, b + 2);
         let hint = "the surface is one line from the sea to the land without loops; check the order and the coordinates of these points";
-        findings.push(Diagnostic::error("surface.crossing", nth("section.surface", b + 1), message).hint(hint).also(nth("section.surface", a + 1)));
+        findings.push(
+            Diagnostic::error("surface.crossing", nth("section.surface", b + 1), message).hint(hint).also(nth("section.surface", a + 1)),
+        );
     }
 }
 
@@ -122,7 +129,10 @@ fn meets(segments: &[[[f64; 2]; 2]], a: usize, b: usize) -> bool {
         let along = ((end[0] - from[0]) * (to[0] - from[0]) + (end[1] - from[1]) * (to[1] - from[1])) / (length * length);
         turn.abs() <= SAME_POINT_M * length && along >= 0.0 && along <= 1.0
     };
-    touches(first, p, r, s, length_b) || touches(second, q, r, s, length_b) || touches(third, r, p, q, length_a) || touches(fourth, s, p, q, length_a)
+    touches(first, p, r, s, length_b)
+        || touches(second, q, r, s, length_b)
+        || touches(third, r, p, q, length_a)
+        || touches(fourth, s, p, q, length_a)
 }
 
 /// Twice the area of the triangle `a b c`, positive counterclockwise.
@@ -147,7 +157,9 @@ fn dates(model: &Model, findings: &mut Vec<Diagnostic>) {
         && until < date
     {
         let message = format!("the report is valid until {}, before its own date {}", show(until), show(date));
-        findings.push(Diagnostic::error("report.valid-until", "report.valid_until", message).hint("correct one of the dates").also("report.date"));
+        findings.push(
+            Diagnostic::error("report.valid-until", "report.valid_until", message).hint("correct one of the dates").also("report.date"),
+        );
     }
     let surveyed = model.section.surveyed.as_ref().and_then(|survey| survey.date);
     if let (Some(surveyed), Some(date)) = (surveyed, model.report.date)

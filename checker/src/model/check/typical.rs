@@ -47,7 +47,8 @@ pub(super) fn check(rock: &Rock, at: &str, findings: &mut Vec<Diagnostic>) {
     for ((value, [low, high], what, unit, key), [below, above]) in values.into_iter().zip(BEYOND) {
         // A thousandfold slip already draws a warning about the unit where the value is read.
         if value < low / below || value > high * above {
-            let message = format!("a {what} of {value:.4} {unit} is unusual for {}: {low} to {high} {unit} is common for the intact rock", kind.word);
+            let message =
+                format!("a {what} of {value:.4} {unit} is unusual for {}: {low} to {high} {unit} is common for the intact rock", kind.word);
             let hint = hint(value, [low, high], key);
             findings.push(Diagnostic::warning("value.unusual", format!("{at}.{key}"), message).hint(hint));
         }

@@ -16,7 +16,8 @@ impl Build<'_> {
         let Some(table) = file.table("outlook") else {
             if file.has("assets") && !file.has("outlook") {
                 let message = "assets are judged in the outlook, but there is no [outlook]";
-                self.collector.add(Diagnostic::error("key.missing", nth("assets", 0), message).hint("add [outlook], or leave [[assets]] out"));
+                self.collector
+                    .add(Diagnostic::error("key.missing", nth("assets", 0), message).hint("add [outlook], or leave [[assets]] out"));
             }
             return None;
         };
@@ -51,14 +52,6 @@ impl Build<'_> {
         }
     }
 
-    pub(super) fn below(&mut self, table: Option<&Tab>) -> Below {
-        Below {
-            use_of_ground: table.and_then(|table| table.owned_if("use")),
-            keep_out_m: table.and_then(|table| table.number_if("keep_out_m")),
-            basis: table.and_then(|table| table.owned_if("basis")),
-        }
-    }
-
     pub(super) fn remedies(&mut self, file: &Tab, rocks: &[String]) -> Vec<Remedy> {
         let names: Vec<String> = file.tables("remedies").iter().map(|table| table.text("name").to_owned()).collect();
         let surcharges: Vec<String> = file.tables("surcharges").iter().map(|table| table.text("name").to_owned()).collect();
@@ -68,7 +61,11 @@ impl Build<'_> {
                 Some(fill) => Some(RemedyKind::Fill {
                     rock: self.reference("rock", fill.text("rock"), rocks, fill.at("rock")),
                     remaining_depth_m: fill.number("remaining_depth_m"),
-                    starts_carrying: if fill.text("starts_carrying") == "at once" { StartsCarrying::AtOnce } else { StartsCarrying::LaterChanges },
+                    starts_carrying: if fill.text("starts_carrying") == "at once" {
+                        StartsCarrying::AtOnce
+                    } else {
+                        StartsCarrying::LaterChanges
+                    },
                 }),
                 None => support(table).or_else(|| self.piles(table, &surcharges)).or_else(|| self.combination(table, &names, i_remedy)),
             };
@@ -133,7 +130,8 @@ fn rate(table: &Tab) -> DeepeningRate {
             basis: edge.text("basis").to_owned(),
         });
     }
-    let dated = |table: &Tab| DatedDepth { date: table.date("date"), depth_m: table.number("depth_m"), accuracy_m: table.number("accuracy_m") };
+    let dated =
+        |table: &Tab| DatedDepth { date: table.date("date"), depth_m: table.number("depth_m"), accuracy_m: table.number("accuracy_m") };
     DeepeningRate::Surveys(table.tables("surveys").iter().map(dated).collect())
 }
 
@@ -162,5 +160,13 @@ pub(super) fn location(table: &Tab) -> CrsLocation {
         origin_northing_m: table.number("origin_northing_m"),
         landward_grid_bearing_rad: table.number("landward_grid_bearing_deg"),
         represents_m: table.pair_if("represents_m"),
+    }
+}
+
+pub(super) fn below(table: Option<&Tab>) -> Below {
+    Below {
+        use_of_ground: table.and_then(|table| table.owned_if("use")),
+        keep_out_m: table.and_then(|table| table.number_if("keep_out_m")),
+        basis: table.and_then(|table| table.owned_if("basis")),
     }
 }

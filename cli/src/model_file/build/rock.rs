@@ -96,7 +96,8 @@ impl Build<'_> {
         }
         if !is_intact && table.has("mass_factor") && table.has("strength_basis") {
             let message = "mass_factor belongs to strength_basis = \"intact\"; these strengths already describe the rock mass";
-            let diagnostic = Diagnostic::error("rock.mass-factor", table.at("mass_factor"), message).hint("leave mass_factor out, or correct the basis");
+            let diagnostic =
+                Diagnostic::error("rock.mass-factor", table.at("mass_factor"), message).hint("leave mass_factor out, or correct the basis");
             self.collector.add(diagnostic.also(table.at("strength_basis")));
         }
         match table.table("mass_factor") {

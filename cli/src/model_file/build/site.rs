@@ -62,7 +62,7 @@ impl Build<'_> {
         };
         let at = table.at("surface_csv");
         match self.extra_text(&name, &at) {
-            Some(text) => survey_csv::read(&name, text, &at, self.collector),
+            Some(text) => survey_csv::read(&name, &text, &at, self.collector),
             None => Vec::new(),
         }
     }
@@ -71,11 +71,9 @@ impl Build<'_> {
         let rock = self.reference("rock", table.text("rock"), names, table.at("rock"));
         let base = match table.value("base") {
             Some(Val::Number(z_m)) => Some(ContactLine::Level(*z_m)),
-            Some(Val::Table(line)) => Some(ContactLine::Dip {
-                x_m: line.number("x_m"),
-                z_m: line.number("z_m"),
-                dip_seaward_rad: line.number("dip_seaward_deg"),
-            }),
+            Some(Val::Table(line)) => {
+                Some(ContactLine::Dip { x_m: line.number("x_m"), z_m: line.number("z_m"), dip_seaward_rad: line.number("dip_seaward_deg") })
+            }
             Some(Val::Points(points)) => Some(ContactLine::Points(points.clone())),
             Some(_) => Some(ContactLine::Level(f64::NAN)),
             None => None,
@@ -84,7 +82,10 @@ impl Build<'_> {
             (Some("load only"), _) => Carries::LoadOnly,
             (None, Some(rock)) if is_loose(rock) => {
                 self.default_used(format!("{}.carries = \"load only\"", table.path));
-                let message = format!("the layer of {:?} is taken to load only: its rock is under 100 MPa stiff and has no tensile strength", rock.name);
+                let message = format!(
+                    "the layer of {:?} is taken to load only: its rock is under 100 MPa stiff and has no tensile strength",
+                    rock.name
+                );
                 let hint = "write carries = \"load only\", or carries = \"load and tension\" where it is meant to carry";
                 self.collector.add(Diagnostic::warning("layers.load-only", table.at("rock"), message).hint(hint));
                 Carries::LoadOnly
@@ -145,37 +146,6 @@ impl Build<'_> {
             start_shape,
         }
     }
-
-    pub(super) fn checks(&mut self, table: Option<&Tab>) -> Checks {
-        let none = PartialFactors { tension: 1.0, cohesion: 1.0, friction: 1.0, unit_weight: 1.0, en_1997_m2: false };
-        let number = |key: &str| table.map_or(f64::NAN, |table| table.number(key));
-        let partial_factors = match table.and_then(|table| table.value("partial_factors")) {
-            Some(Val::Table(own)) => PartialFactors {
-                tension: own.number("tension"),
-                cohesion: own.number("cohesion"),
-                friction: own.number("friction"),
-                unit_weight: own.number("unit_weight"),
-                en_1997_m2: false,
-            },
-            // EN 1997-1:2004 annex A, set M2: 1.25 on c' and tan phi', 1.0 on weight. There is no set for rock tension; 1.25 there is this program's choice.
-            Some(Val::Text(word)) if word == "EN 1997-1 M2" => {
-                PartialFactors { tension: 1.25, cohesion: 1.25, friction: 1.25, unit_weight: 1.0, en_1997_m2: true }
-            }
-            _ => none,
-        };
-        Checks {
-            headline: if table.is_some_and(|table| table.text("headline") == "best estimate") { Headline::BestEstimate } else { Headline::Cautious },
-            averaging: table.and_then(|table| table.number_if("averaging_length_m")).map_or(Averaging::FromThickness, Averaging::Given),
-            partial_factors,
-            required_reserve: number("required_reserve"),
-            target_error: number("target_error"),
-        }
-    }
-
-    pub(super) fn extent(&mut self, table: Option<&Tab>) -> Extent {
-        let number = |key: &str| table.and_then(|table| table.number_if(key));
-        Extent { seaward_x_m: number("seaward_x_m"), landward_x_m: number("landward_x_m"), base_z_m: number("base_z_m") }
-    }
 }
 
 /// Whether a rock is so soft and weak that its layer only loads.
@@ -206,4 +176,39 @@ pub(super) fn probe(table: &Tab) -> Probe {
 
 pub(super) fn cut(table: &Tab) -> Cut {
     Cut { name: table.text("name").to_owned(), from_m: table.pair("from"), to_m: table.pair("to") }
+}
+
+pub(super) fn checks(table: Option<&Tab>) -> Checks {
+    let none = PartialFactors { tension: 1.0, cohesion: 1.0, friction: 1.0, unit_weight: 1.0, en_1997_m2: false };
+    let number = |key: &str| table.map_or(f64::NAN, |table| table.number(key));
+    let partial_factors = match table.and_then(|table| table.value("partial_factors")) {
+        Some(Val::Table(own)) => PartialFactors {
+            tension: own.number("tension"),
+            cohesion: own.number("cohesion"),
+            friction: own.number("friction"),
+            unit_weight: own.number("unit_weight"),
+            en_1997_m2: false,
+        },
+        // EN 1997-1:2004 annex A, set M2: 1.25 on c' and tan phi', 1.0 on weight. There is no set for rock tension; 1.25 there is this program's choice.
+        Some(Val::Text(word)) if word == "EN 1997-1 M2" => {
+            PartialFactors { tension: 1.25, cohesion: 1.25, friction: 1.25, unit_weight: 1.0, en_1997_m2: true }
+        }
+        _ => none,
+    };
+    Checks {
+        headline: if table.is_some_and(|table| table.text("headline") == "best estimate") {
+            Headline::BestEstimate
+        } else {
+            Headline::Cautious
+        },
+        averaging: table.and_then(|table| table.number_if("averaging_length_m")).map_or(Averaging::FromThickness, Averaging::Given),
+        partial_factors,
+        required_reserve: number("required_reserve"),
+        target_error: number("target_error"),
+    }
+}
+
+pub(super) fn extent(table: Option<&Tab>) -> Extent {
+    let number = |key: &str| table.and_then(|table| table.number_if(key));
+    Extent { seaward_x_m: number("seaward_x_m"), landward_x_m: number("landward_x_m"), base_z_m: number("base_z_m") }
 }

@@ -10,15 +10,6 @@ const WATER_UNIT_WEIGHT_N_PER_M3: f64 = 9810.0;
 const SEA_UNIT_WEIGHT_N_PER_M3: f64 = 10_050.0;
 
 impl Build<'_> {
-    pub(super) fn surcharge(&mut self, table: &Tab) -> Surcharge {
-        Surcharge {
-            name: table.text("name").to_owned(),
-            x_m: table.pair("x_m"),
-            pressure_pa: table.number("pressure_kpa"),
-            inertia: table.flag("inertia"),
-        }
-    }
-
     /// The situations of the file; a dry one named "ordinary" where it has none.
     pub(super) fn situations(&mut self, file: &Tab) -> Vec<Situation> {
         let names: Vec<String> = file.tables("surcharges").iter().map(|table| table.text("name").to_owned()).collect();
@@ -77,5 +68,14 @@ fn ordinary(n_surcharges: usize) -> Situation {
         inertia_seaward: 0.0,
         inertia_up: 0.0,
         annual_chance: None,
+    }
+}
+
+pub(super) fn surcharge(table: &Tab) -> Surcharge {
+    Surcharge {
+        name: table.text("name").to_owned(),
+        x_m: table.pair("x_m"),
+        pressure_pa: table.number("pressure_kpa"),
+        inertia: table.flag("inertia"),
     }
 }

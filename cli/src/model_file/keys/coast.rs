@@ -1,5 +1,5 @@
 //! Keys of the outlook: deepening rate, assets, evidence, use below, place on the map.
-use super::super::kinds::{Family, Kind, Limits, OneOf, Preset, Quantity, Shape, Unit, default, derived, optional, required};
+use super::super::kinds::{Family, Kind, Limits, OneOf, Preset, Quantity, Shape, Unit, default, derived, neutral, optional, required};
 use super::COORDINATE;
 use super::site::DEPTH;
 
@@ -84,12 +84,7 @@ pub(super) static OUTLOOK: Shape = Shape {
         optional("storms", Kind::Table(&STORMS), "jumps by storms on top of the rate"),
         required("basis", Kind::Text, "where the rate comes from"),
         optional("record_years", YEARS, "length of the record behind the rate"),
-        default(
-            "extrapolated",
-            Kind::Flag,
-            Preset::Flag(false),
-            "whether a horizon over twice the record is accepted",
-        ),
+        neutral("extrapolated", Kind::Flag, Preset::Flag(false), "whether a horizon over twice the record is accepted"),
         optional("sea_level_rise_m_per_year", Kind::Table(&SEA_LEVEL_RISE), "scaling of the rate with sea-level rise"),
         derived(
             "model_factor",
@@ -97,16 +92,12 @@ pub(super) static OUTLOOK: Shape = Shape {
             "{ mean = 1.0, cov = 0.3 }, which is judgement",
             "factor on capacity over demand",
         ),
-        default("allowance_m", DEPTH, Preset::Number(0.0), "allowance added to the setback"),
+        neutral("allowance_m", DEPTH, Preset::Number(0.0), "allowance added to the setback"),
         optional("allowance_for", Kind::Text, "what the allowance is for"),
         default("samples", Kind::Integer(1000, 10_000_000), Preset::Integer(100_000), "number of samples"),
         default("seed", Kind::Integer(0, i64::MAX), Preset::Integer(1), "seed of the random numbers"),
     ],
-    one_of: &[OneOf {
-        keys: &["deepening_m_per_year", "surveys", "edge_retreat"],
-        required: true,
-        what: "the deepening rate",
-    }],
+    one_of: &[OneOf { keys: &["deepening_m_per_year", "surveys", "edge_retreat"], required: true, what: "the deepening rate" }],
     together: &[],
     mistakes: &[],
 };
@@ -174,11 +165,7 @@ pub(super) static LOCATION: Shape = Shape::new(
             Kind::Number(Quantity::new(Unit::Meter, Limits::at_least(-1e8).at_most(1e8))),
             "easting of the fixed mark where x = 0",
         ),
-        required(
-            "origin_northing_m",
-            Kind::Number(Quantity::new(Unit::Meter, Limits::at_least(-1e8).at_most(1e8))),
-            "northing of it",
-        ),
+        required("origin_northing_m", Kind::Number(Quantity::new(Unit::Meter, Limits::at_least(-1e8).at_most(1e8))), "northing of it"),
         required(
             "landward_grid_bearing_deg",
             Kind::Number(Quantity::new(Unit::Degree, Limits::at_least(0.0).at_most(360.0))),

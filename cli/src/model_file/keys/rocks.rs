@@ -1,7 +1,9 @@
 //! Keys of the rocks: weight, stiffness, strength, planes of weakness.
-use super::super::kinds::{Family, Field, Kind, Limits, OneOf, Preset, Quantity, Shape, Suspicion, Unit, default, derived, optional, required};
-use super::site::PLANE_DIP;
+use super::super::kinds::{
+    Family, Field, Kind, Limits, OneOf, Preset, Quantity, Shape, Suspicion, Unit, default, derived, optional, required,
+};
 use super::LENGTH;
+use super::site::PLANE_DIP;
 
 /// A unit weight of rock. Suspicious ranges: densities typed as unit weights (rocks lie between 11 and 30 kN/m3).
 const UNIT_WEIGHT: Quantity = Quantity::new(Unit::KilonewtonPerCubicMeter, Limits::over(0.0).at_most(100_000.0)).suspect(&[
@@ -31,20 +33,23 @@ const FRICTION: Quantity = Quantity::new(Unit::Degree, Limits::at_least(0.0).und
     Suspicion { from: 70.0, to: 90.0, likely: "a secant angle at low stress: write the tangent angle over the stresses of the section" },
 ]);
 
-const UNIAXIAL: Quantity = Quantity::new(Unit::Megapascal, Limits::over(0.0).at_most(1e9))
-    .suspect(&[Suspicion { from: 450.0, to: 1e9 + 1.0, likely: "kPa: divide by 1000" }]);
+const UNIAXIAL: Quantity = Quantity::new(Unit::Megapascal, Limits::over(0.0).at_most(1e9)).suspect(&[Suspicion {
+    from: 450.0,
+    to: 1e9 + 1.0,
+    likely: "kPa: divide by 1000",
+}]);
 
-const TOUGHNESS: Quantity = Quantity::new(Unit::MegapascalRootMeter, Limits::over(0.0).at_most(10_000.0))
-    .suspect(&[Suspicion { from: 6.0, to: 10_001.0, likely: "MPa mm^0.5: multiply by 0.0316; or kPa m^0.5: divide by 1000" }]);
+const TOUGHNESS: Quantity = Quantity::new(Unit::MegapascalRootMeter, Limits::over(0.0).at_most(10_000.0)).suspect(&[Suspicion {
+    from: 6.0,
+    to: 10_001.0,
+    likely: "MPa mm^0.5: multiply by 0.0316; or kPa m^0.5: divide by 1000",
+}]);
 
 const RATIO: Quantity = Quantity::new(Unit::One, Limits::over(0.0).at_most(1.0));
 
 static MASS_FACTOR: Shape = Shape::new(
     "Factors from intact specimen to rock mass",
-    &[
-        required("tension", Kind::Number(RATIO), "on tensile strength"),
-        required("cohesion", Kind::Number(RATIO), "on cohesion"),
-    ],
+    &[required("tension", Kind::Number(RATIO), "on tensile strength"), required("cohesion", Kind::Number(RATIO), "on cohesion")],
 );
 
 static CORRELATION: Shape = Shape::new(

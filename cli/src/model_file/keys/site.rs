@@ -2,10 +2,8 @@
 use super::super::kinds::{Field, Kind, Limits, OneOf, Preset, Quantity, Shape, Unit, default, derived, optional, required};
 use super::{COORDINATE, DIP_SEAWARD, LENGTH, LENGTH_OR_ZERO};
 
-static PERSON: Shape = Shape::new(
-    "A person",
-    &[required("name", Kind::Text, "name"), optional("qualification", Kind::Text, "qualification or registration")],
-);
+static PERSON: Shape =
+    Shape::new("A person", &[required("name", Kind::Text, "name"), optional("qualification", Kind::Text, "qualification or registration")]);
 
 pub(super) static REPORT: Shape = Shape::new(
     "Who, what and when; all of it optional and printed in the report",
@@ -38,7 +36,11 @@ pub(super) static SECTION: Shape = Shape {
     doc: "The rock surface walked from the sea to the land: platform, undercut floor, back, roof, lip, face, brow, plateau",
     fields: &[
         optional("surface", Kind::Points(4), "the surface as a list of points"),
-        optional("surface_csv", Kind::File, "the surface as a CSV file with the columns x_m, z_m and, optionally, how (measured or inferred)"),
+        optional(
+            "surface_csv",
+            Kind::File,
+            "the surface as a CSV file with the columns x_m, z_m and, optionally, how (measured or inferred)",
+        ),
         optional("vertical_datum", Kind::Text, "what the levels count from"),
         optional("original_surface", Kind::Points(2), "the ground before the sea cut it; left out, it is level at the brow, seaward of it"),
         optional("brow", Kind::Point, "the brow, where the one that is found is not the one meant"),
@@ -79,11 +81,11 @@ pub(super) static LAYER: Shape = Shape {
             Kind::Either(&[COORDINATE, Kind::Table(&DIPPING), Kind::Points(2)]),
             "its lower contact: a level, a dipping line, or points with growing x, level beyond the ends; not for the last layer",
         ),
-        derived(
+        optional(
             "carries",
             Kind::Choice(&["load and tension", "load only"]),
-            "\"load and tension\"; \"load only\" where the rock is under 100 MPa stiff and has no tensile strength",
-            "\"load only\": the layer weighs, holds no tension, and lies back after a break",
+            "\"load only\": the layer weighs, holds no tension and lies back after a break; left out, \"load and tension\", but \"load only\" where \
+             the rock is under 100 MPa stiff and has no tensile strength",
         ),
         optional(
             "rest_slope_deg",

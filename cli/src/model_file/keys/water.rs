@@ -1,5 +1,5 @@
 //! Keys of what acts: situations with water and ground motion, surcharges.
-use super::super::kinds::{Kind, Limits, Preset, Quantity, Shape, Unit, default, derived, optional, required};
+use super::super::kinds::{Kind, Limits, Preset, Quantity, Shape, Unit, default, derived, neutral, optional, required};
 use super::{COORDINATE, LENGTH_OR_ZERO};
 
 /// A unit weight of water.
@@ -50,8 +50,8 @@ pub(super) static SITUATION: Shape = Shape {
         ),
         optional("crack_water_above_tip_m", LENGTH_OR_ZERO, "height of the water standing in each crack above its tip"),
         derived("surcharges", Kind::Texts, "all of them", "names of the surcharges that act"),
-        default("inertia_seaward", INERTIA, Preset::Number(0.0), "pseudo-static coefficient toward the sea"),
-        default("inertia_up", INERTIA, Preset::Number(0.0), "pseudo-static coefficient upward"),
+        neutral("inertia_seaward", INERTIA, Preset::Number(0.0), "pseudo-static coefficient toward the sea"),
+        neutral("inertia_up", INERTIA, Preset::Number(0.0), "pseudo-static coefficient upward"),
         optional(
             "annual_chance",
             Kind::Number(Quantity::new(Unit::One, Limits::over(0.0).at_most(1.0))),
@@ -73,6 +73,6 @@ pub(super) static SURCHARGE: Shape = Shape::new(
             Kind::Number(Quantity::new(Unit::Kilopascal, Limits::at_least(0.0).at_most(10_000.0))),
             "pressure, downward",
         ),
-        default("inertia", Kind::Flag, Preset::Flag(false), "whether its mass shakes too"),
+        neutral("inertia", Kind::Flag, Preset::Flag(false), "whether its mass shakes too"),
     ],
 );

@@ -15,7 +15,9 @@ const LONGEST_TEXT: usize = 10_000;
 impl Walk<'_> {
     pub(super) fn scalar(&mut self, kind: &'static Kind, at: &At, value: &Spanned<DeValue<'_>>) -> Val {
         match kind {
-            Kind::Number(quantity) => self.number(kind, quantity, at, value).map_or(Val::Bad, |number| Val::Number(quantity.unit.to_si(number))),
+            Kind::Number(quantity) => {
+                self.number(kind, quantity, at, value).map_or(Val::Bad, |number| Val::Number(quantity.unit.to_si(number)))
+            }
             Kind::Uncertain(quantity, family) => self.uncertain(kind, (quantity, *family), at, value),
             Kind::Integer(min, max) => self.integer(kind, [*min, *max], at, value),
             Kind::Text | Kind::File => self.text(kind, at, value).map_or(Val::Bad, Val::Text),
@@ -44,7 +46,11 @@ impl Walk<'_> {
             return None;
         }
         if !quantity.limits.allow(number) {
-            let message = format!("{} is outside the limits: it must be {}", with_unit(number, quantity.unit), quantity.limits.describe(quantity.unit));
+            let message = format!(
+                "{} is outside the limits: it must be {}",
+                with_unit(number, quantity.unit),
+                quantity.limits.describe(quantity.unit)
+            );
             self.error(Diagnostic::error("value.limit", &at.path, message).hint(limit_hint(number, quantity)), value);
             return None;
         }
@@ -97,7 +103,8 @@ impl Walk<'_> {
         if words.contains(&text.as_ref()) {
             return Val::Text(text.to_string());
         }
-        let message = format!("{:?} is none of the words that are known here: {}", clip(text, 40), describe(kind).trim_start_matches("one of "));
+        let message =
+            format!("{:?} is none of the words that are known here: {}", clip(text, 40), describe(kind).trim_start_matches("one of "));
         let hint = match nearest_of(text, words.iter().copied()) {
             Some(word) => format!("did you mean \"{word}\"?"),
             None => number_in_text(value.get_ref()).unwrap_or_else(|| "write one of them".into()),
@@ -139,7 +146,12 @@ impl Walk<'_> {
             return self.wrong_kind(kind, at, value, None);
         };
         if entries.len() == 2 && entries.iter().all(|entry| plain_number(entry.get_ref()).is_some()) {
-            return self.wrong_kind(kind, at, value, Some("one point is not enough, and points stand in double brackets: [[x, z], [x, z]]".into()));
+            return self.wrong_kind(
+                kind,
+                at,
+                value,
+                Some("one point is not enough, and points stand in double brackets: [[x, z], [x, z]]".into()),
+            );
         }
         let mut points = Vec::with_capacity(entries.len());
         for (i_entry, entry) in entries.iter().enumerate() {
@@ -155,7 +167,10 @@ impl Walk<'_> {
         }
         if points.len() < n_least {
             let message = format!("there {} here, but at least {n_least} are needed", count(points.len()));
-            self.error(Diagnostic::error("value.few-points", &at.path, message).hint("add points, or leave the key out if it is optional"), value);
+            self.error(
+                Diagnostic::error("value.few-points", &at.path, message).hint("add points, or leave the key out if it is optional"),
+                value,
+            );
             return Val::Bad;
         }
         Val::Points(points)
@@ -178,7 +193,9 @@ impl Walk<'_> {
         let (problem, hint) = match kind {
             Kind::Range if first >= second => ("the first value must be less than the second", "x grows landward: write [from, to]"),
             Kind::Pair if first < 0.0 || second < 0.0 => ("both lengths must be at least 0", "write them without a sign"),
-            Kind::Direction if first.hypot(second) < 1e-9 => ("a direction of length zero points nowhere", "for example [0, -1] is downward"),
+            Kind::Direction if first.hypot(second) < 1e-9 => {
+                ("a direction of length zero points nowhere", "for example [0, -1] is downward")
+            }
             _ => return Val::Pair([first, second]),
         };
         self.error(Diagnostic::error("value.limit", &at.path, problem).hint(hint), value);
@@ -189,7 +206,9 @@ impl Walk<'_> {
 /// The value of a number, whole or not; NaN and infinity are returned as they are.
 pub(super) fn plain_number(value: &DeValue<'_>) -> Option<f64> {
     match value {
-        DeValue::Integer(number) => i128::from_str_radix(number.as_str(), number.radix()).ok().map(|number| number as f64).or(Some(f64::INFINITY)),
+        DeValue::Integer(number) => {
+            i128::from_str_radix(number.as_str(), number.radix()).ok().map(|number| number as f64).or(Some(f64::INFINITY))
+        }
         DeValue::Float(number) => number.as_str().parse().ok(),
         _ => None,
     }

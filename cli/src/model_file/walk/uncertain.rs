@@ -1,5 +1,5 @@
 //! Numbers that may be uncertain: a plain number, mean with scatter, or two ends.
-use super::super::kinds::{Family, Kind, Quantity, Shape, Unit, Limits, optional};
+use super::super::kinds::{Family, Kind, Limits, Quantity, Shape, Unit, optional};
 use super::super::tree::Val;
 use super::scalar::{plain_number, with_unit};
 use super::{At, Walk};
@@ -20,7 +20,11 @@ pub(in super::super) static UNCERTAIN: Shape = Shape {
         optional("mean", PLAIN, "mean"),
         optional("cov", PLAIN, "coefficient of variation: standard deviation over mean, at most 2"),
         optional("standard_deviation", PLAIN, "standard deviation, in the unit of the mean; instead of cov"),
-        optional("distribution", Kind::Choice(&["lognormal", "normal", "truncated-normal"]), "distribution; left out, the default of the key"),
+        optional(
+            "distribution",
+            Kind::Choice(&["lognormal", "normal", "truncated-normal"]),
+            "distribution; left out, the default of the key",
+        ),
         optional("min", PLAIN, "lower end: alone with max an even distribution, with \"truncated-normal\" a cut"),
         optional("max", PLAIN, "upper end"),
     ],
@@ -103,8 +107,12 @@ fn distribution(parts: &Parts, family: Family) -> Result<Uncertain, (String, Str
     }
     let Some(mean) = parts.mean else {
         return match ends {
-            Some(_) if parts.cov.is_some() || parts.standard_deviation.is_some() => fault("cov or standard_deviation is given without mean", "add mean"),
-            Some(_) if parts.distribution.is_some() => fault("min and max alone are an even distribution", "leave distribution out, or add mean and cov"),
+            Some(_) if parts.cov.is_some() || parts.standard_deviation.is_some() => {
+                fault("cov or standard_deviation is given without mean", "add mean")
+            }
+            Some(_) if parts.distribution.is_some() => {
+                fault("min and max alone are an even distribution", "leave distribution out, or add mean and cov")
+            }
             Some((min, max)) => Ok(Uncertain::Uniform { min, max }),
             None => fault("an uncertain number needs mean, or min and max", "write { mean = …, cov = … } or { min = …, max = … }"),
         };
@@ -131,11 +139,18 @@ fn distribution(parts: &Parts, family: Family) -> Result<Uncertain, (String, Str
         ("truncated-normal", Some((min, max))) if min < mean && mean < max => {
             Ok(Uncertain::TruncatedNormal { mean, standard_deviation, min, max })
         }
-        ("truncated-normal", Some((min, max))) => Err((format!("the mean {mean} does not lie between min = {min} and max = {max}"), "correct the ends".into())),
+        ("truncated-normal", Some((min, max))) => {
+            Err((format!("the mean {mean} does not lie between min = {min} and max = {max}"), "correct the ends".into()))
+        }
         ("truncated-normal", None) => fault("\"truncated-normal\" needs min and max", "add both, or write \"normal\""),
-        (_, Some(_)) => fault("min and max beside mean cut a normal distribution", "add distribution = \"truncated-normal\", or leave min and max out"),
+        (_, Some(_)) => {
+            fault("min and max beside mean cut a normal distribution", "add distribution = \"truncated-normal\", or leave min and max out")
+        }
         ("normal", None) => Ok(Uncertain::Normal { mean, standard_deviation }),
-        _ if mean <= 0.0 => Err((format!("a lognormal number must have a mean over 0, not {}", with_unit(mean, Unit::One)), "write a plain number, or distribution = \"normal\"".into())),
+        _ if mean <= 0.0 => Err((
+            format!("a lognormal number must have a mean over 0, not {}", with_unit(mean, Unit::One)),
+            "write a plain number, or distribution = \"normal\"".into(),
+        )),
         _ => Ok(Uncertain::Lognormal { mean, cov }),
     }
 }
@@ -146,9 +161,7 @@ fn to_si(number: Uncertain, unit: Unit) -> Uncertain {
     match number {
         Uncertain::Exact(value) => Uncertain::Exact(si(value)),
         Uncertain::Lognormal { mean, cov } => Uncertain::Lognormal { mean: si(mean), cov },
-        Uncertain::Normal { mean, standard_deviation } => {
-            Uncertain::Normal { mean: si(mean), standard_deviation: si(standard_deviation) }
-        }
+        Uncertain::Normal { mean, standard_deviation } => Uncertain::Normal { mean: si(mean), standard_deviation: si(standard_deviation) },
         Uncertain::TruncatedNormal { mean, standard_deviation, min, max } => {
             Uncertain::TruncatedNormal { mean: si(mean), standard_deviation: si(standard_deviation), min: si(min), max: si(max) }
         }
