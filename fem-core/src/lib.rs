@@ -15,3 +15,9 @@ pub mod tensor;
 
 pub mod assembly;
 pub mod supports;
+
+pub mod floating;
+
+pub mod locate;
+pub mod recovery;
+pub mod stress;
