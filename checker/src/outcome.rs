@@ -1,6 +1,9 @@
 //! The published results: plain data in the engineer's units (kPa, kN, m, mm), tension positive. Keys are stable: add, never rename.
 //!
 //! `cli` serializes [`Outcome`] as `summary.json` and draws tables, pictures and fields from it and from [`FieldSnapshot`].
+mod derived;
+
+pub use derived::{Principal, principal};
 use serde::Serialize;
 
 /// A point as `[x, z]` in m.

@@ -3,6 +3,7 @@ pub mod csv;
 pub mod folder;
 pub mod json;
 pub mod text;
+pub mod vtk;
 pub mod words;
 
 #[cfg(test)]

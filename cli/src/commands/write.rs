@@ -5,7 +5,7 @@ use super::analysis::{Results, Scope};
 use super::load::Loaded;
 use crate::exit::Exit;
 use crate::output::folder::{FolderError, Staging};
-use crate::output::{Provenance, csv, json};
+use crate::output::{Provenance, csv, json, vtk};
 use crate::progress::Reporter;
 
 /// Everything the files are made from.
@@ -34,6 +34,9 @@ pub(crate) enum WriteError {
     /// A number that is none.
     #[error(transparent)]
     NotFinite(#[from] json::NotFinite),
+    /// The fields.
+    #[error(transparent)]
+    Field(#[from] vtk::FieldError),
     /// The table.
     #[error("cannot write `depths.csv`: {0}")]
     Csv(#[from] ::csv::Error),
@@ -43,18 +46,21 @@ impl WriteError {
     /// Exit code of the run.
     pub(crate) fn exit(&self) -> Exit {
         match self {
-            Self::NotFinite(_) => Exit::Analysis,
+            Self::NotFinite(_) | Self::Field(_) => Exit::Analysis,
             Self::Folder(_) | Self::Csv(_) => Exit::File,
         }
     }
 }
 
 /// Writes all files of the command and makes them appear. Returns a line that says what was written.
-pub(crate) fn all(job: &Job<'_>, mut staging: Staging, _reporter: &Reporter) -> Result<String, WriteError> {
+pub(crate) fn all(job: &Job<'_>, mut staging: Staging, reporter: &Reporter) -> Result<String, WriteError> {
     let outcome = &job.results.outcome;
     if job.scope != Scope::Mesh {
         staging.write("summary.json", json::summary(outcome, job.provenance)?.as_bytes())?;
         staging.write("depths.csv", &csv::depths(outcome)?)?;
+    }
+    if matches!(job.scope, Scope::Assess | Scope::Mesh) {
+        fields(job, &mut staging, reporter)?;
     }
     for (name, bytes) in &job.loaded.files {
         staging.write(name, bytes)?;
@@ -64,9 +70,25 @@ pub(crate) fn all(job: &Job<'_>, mut staging: Staging, _reporter: &Reporter) -> 
     Ok(format!("wrote {} files to {shown}", names.len()))
 }
 
+/// One file a depth and the series.
+fn fields(job: &Job<'_>, staging: &mut Staging, reporter: &Reporter) -> Result<(), WriteError> {
+    let fields = &job.results.fields;
+    let Some(first) = fields.first() else { return Ok(()) };
+    let depths_m: Vec<f64> = fields.iter().map(|field| field.depth_m).collect();
+    staging.write("fields/series.pvd", vtk::series(&depths_m, &first.rock_names).as_bytes())?;
+    for (i, (snapshot, name)) in fields.iter().zip(vtk::file_names(&depths_m)).enumerate() {
+        reporter.step("writing fields", i, fields.len());
+        staging.write(&format!("fields/{name}"), &vtk::field(snapshot, job.linear_triangles)?)?;
+    }
+    Ok(())
+}
+
 /// Reads the letterhead template; the error is a sentence for people.
 #[expect(clippy::disallowed_methods, reason = "the boundary reads files")]
 pub(crate) fn letterhead(path: Option<&Path>) -> Result<Option<String>, String> {
     path.map(|path| std::fs::read_to_string(path).map_err(|error| format!("cannot read the letterhead `{}`: {error}", path.display())))
         .transpose()
 }
+
+#[cfg(test)]
+mod tests;

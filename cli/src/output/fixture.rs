@@ -6,6 +6,10 @@ use checker::outcome::{
 };
 use fem_core::mesh::Mesh;
 
+mod model;
+
+pub(crate) use model::{MODEL_TEXT, model};
+
 use super::Provenance;
 
 const BROW: PointXz = [0.0, 31.2];
