@@ -1,7 +1,9 @@
 //! Everything that leaves the program: [`checker::outcome::Outcome`] in, text, tables, pictures, fields and the report out.
 pub mod csv;
+pub mod figures;
 pub mod folder;
 pub mod json;
+pub mod svg;
 pub mod text;
 pub mod vtk;
 pub mod words;

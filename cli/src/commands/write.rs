@@ -4,8 +4,10 @@ use std::path::Path;
 use super::analysis::{Results, Scope};
 use super::load::Loaded;
 use crate::exit::Exit;
+use crate::output::figures::Figures;
 use crate::output::folder::{FolderError, Staging};
-use crate::output::{Provenance, csv, json, vtk};
+use crate::output::svg::field::Quantity;
+use crate::output::{Provenance, csv, json, svg, vtk};
 use crate::progress::Reporter;
 
 /// Everything the files are made from.
@@ -62,6 +64,9 @@ pub(crate) fn all(job: &Job<'_>, mut staging: Staging, reporter: &Reporter) -> R
     if matches!(job.scope, Scope::Assess | Scope::Mesh) {
         fields(job, &mut staging, reporter)?;
     }
+    for (name, text) in pictures(job) {
+        staging.write(name, text.as_bytes())?;
+    }
     for (name, bytes) in &job.loaded.files {
         staging.write(name, bytes)?;
     }
@@ -81,6 +86,23 @@ fn fields(job: &Job<'_>, staging: &mut Staging, reporter: &Reporter) -> Result<(
         staging.write(&format!("fields/{name}"), &vtk::field(snapshot, job.linear_triangles)?)?;
     }
     Ok(())
+}
+
+/// The pictures that the command writes as files.
+fn pictures(job: &Job<'_>) -> Vec<(&'static str, String)> {
+    let figures = Figures::new(&job.results.outcome, &job.loaded.model, &job.results.fields);
+    let mut pictures = Vec::new();
+    let Some(surveyed) = figures.surveyed else { return pictures };
+    pictures.push(("mesh.svg", svg::mesh::picture(surveyed, figures.outcome, "mesh").file()));
+    if job.scope == Scope::Mesh {
+        return pictures;
+    }
+    pictures.extend(figures.section().map(|picture| ("section.svg", picture.file())));
+    pictures.push(("stress-surveyed.svg", figures.field(Quantity::MajorStress, surveyed, "stress").file()));
+    if let Some(critical) = figures.critical {
+        pictures.push(("stress-critical.svg", figures.field(Quantity::MajorStress, critical, "stress").file()));
+    }
+    pictures
 }
 
 /// Reads the letterhead template; the error is a sentence for people.

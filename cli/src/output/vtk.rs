@@ -10,11 +10,6 @@ use vtkio::model::{
 };
 use vtkio::xml::Compressor;
 
-/// Length of the blocks into which the library compresses, bytes.
-const BLOCK_BYTES: usize = 32768;
-/// Compression level: the fastest, as most of the bytes are noise.
-const LEVEL: u32 = 1;
-
 /// Why a field cannot be written.
 #[derive(Debug, thiserror::Error)]
 #[non_exhaustive]
@@ -68,20 +63,13 @@ pub fn field(snapshot: &FieldSnapshot, linear_triangles: bool) -> Result<Vec<u8>
     let points = Points::gather(snapshot)?;
     let format = |message: String| FieldError::Format { depth_m: snapshot.depth_m, message };
     let cells = cells(&points.triangles, linear_triangles);
-    let n_cells = cells.types.len();
-    let arrays = points.arrays(snapshot);
-    // The library writes an empty last block where an array fills its blocks exactly, which readers take for a full one.
-    let fills_blocks = |bytes: usize| bytes.is_multiple_of(BLOCK_BYTES);
-    let compress =
-        !arrays.iter().map(|array| array.data.num_bytes()).chain([points.owner.len() * 24, n_cells, 8 * n_cells]).any(fills_blocks)
-            && !fills_blocks(cells.cell_verts.num_verts() * 8);
     let per_cell = if linear_triangles { 4 } else { 1 };
     let rock: Vec<i32> = snapshot.mesh.regions.iter().flat_map(|region| std::iter::repeat_n(*region as i32, per_cell)).collect();
     let grid = UnstructuredGridPiece {
         points: IOBuffer::F64(points.owner.iter().flat_map(|node| points.coordinates(snapshot, *node)).collect()),
         cells,
         data: Attributes {
-            point: arrays.into_iter().map(Attribute::DataArray).collect(),
+            point: points.arrays(snapshot).into_iter().map(Attribute::DataArray).collect(),
             cell: vec![Attribute::DataArray(DataArray::scalars("rock_id", 1).with_buf(IOBuffer::I32(rock)))],
         },
     };
@@ -92,9 +80,8 @@ pub fn field(snapshot: &FieldSnapshot, linear_triangles: bool) -> Result<Vec<u8>
         data: DataSet::inline(grid),
         file_path: None,
     };
-    let compress = compress && !rock_fills(n_cells);
-    let (compressor, level) = if compress { (Compressor::ZLib, LEVEL) } else { (Compressor::None, 0) };
-    let file = vtk.try_into_xml_format(compressor, level).map_err(|error| format(error.to_string()))?;
+    // Uncompressed: the library compresses value by value, which takes longer than the analysis.
+    let file = vtk.try_into_xml_format(Compressor::None, 0).map_err(|error| format(error.to_string()))?;
     let mut text = Vec::new();
     file.write(&mut text).map_err(|error| format(error.to_string()))?;
     // Some readers refuse unsigned connectivity; the bytes are the same.
@@ -103,11 +90,6 @@ pub fn field(snapshot: &FieldSnapshot, linear_triangles: bool) -> Result<Vec<u8>
         .replace("type=\"UInt64\" Name=\"connectivity\"", "type=\"Int64\" Name=\"connectivity\"")
         .replace("type=\"UInt64\" Name=\"offsets\"", "type=\"Int64\" Name=\"offsets\"")
         .into_bytes())
-}
-
-/// Whether the array of rock numbers (4 bytes each) fills its blocks exactly.
-fn rock_fills(n_cells: usize) -> bool {
-    (4 * n_cells).is_multiple_of(BLOCK_BYTES)
 }
 
 /// Points of the file: one for each node and value.

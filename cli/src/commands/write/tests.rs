@@ -33,7 +33,17 @@ fn assess_writes_every_file_of_the_contract() {
     let staging = Staging::open(&target, true, &Interrupt::default()).unwrap();
     let told = all(&job, staging, &Reporter::new(true)).unwrap();
     assert!(told.starts_with("wrote "), "{told}");
-    for name in ["summary.json", "depths.csv", "fields/series.pvd", "fields/depth-2.30.vtu", "gannet-ledge.toml"] {
+    for name in [
+        "summary.json",
+        "depths.csv",
+        "fields/series.pvd",
+        "fields/depth-2.30.vtu",
+        "gannet-ledge.toml",
+        "section.svg",
+        "mesh.svg",
+        "stress-surveyed.svg",
+        "stress-critical.svg",
+    ] {
         assert!(target.join(name).is_file(), "{name}");
     }
     if std::env::var_os("BRINKLINE_FIXTURE_RESULTS").is_none() {
