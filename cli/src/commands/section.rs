@@ -3,14 +3,14 @@ use std::path::PathBuf;
 
 use checker::model::{Headline, Model};
 use checker::outcome::{Outcome, Program, Status};
-use sha2::{Digest, Sha256};
 
 use super::analysis::{self, Scope};
-use super::load::{self, Loaded};
+use super::load;
 use super::{print, write};
 use crate::args::RunArgs;
 use crate::exit::Exit;
 use crate::interrupt::Interrupt;
+use crate::model_file::LoadedModel;
 use crate::output::folder::{self, Staging};
 use crate::output::text::{self, TextParts};
 use crate::output::{Provenance, json};
@@ -83,12 +83,10 @@ fn target(scope: Scope, args: &RunArgs) -> Option<PathBuf> {
 
 /// Fills in program, file and hash. The command leaves out what does not change a result, so that results are the same bytes
 /// for any number of threads and in any folder.
-fn identify(outcome: &mut Outcome, loaded: &Loaded, scope: Scope, args: &RunArgs) -> Provenance {
+fn identify(outcome: &mut Outcome, loaded: &LoadedModel, scope: Scope, args: &RunArgs) -> Provenance {
     outcome.program = Program { name: env!("CARGO_PKG_NAME").to_owned(), version: env!("CARGO_PKG_VERSION").to_owned() };
-    if let Some((name, bytes)) = loaded.files.first() {
-        outcome.model.file.clone_from(name);
-        outcome.model.sha256 = hex(&Sha256::digest(bytes));
-    }
+    outcome.model.file.clone_from(&loaded.file_name);
+    outcome.model.sha256.clone_from(&loaded.sha256);
     let verb = match scope {
         Scope::Assess => "assess",
         Scope::Check => "check",
@@ -125,9 +123,4 @@ fn verdict(outcome: &Outcome, model: &Model, exit_over_limit: bool) -> Exit {
     let missed = if outcome.status == Status::TargetMissed { Exit::Analysis } else { Exit::Done };
     let limit = if exit_over_limit && (over || outcome.status == Status::PartRefused) { Exit::OverLimit } else { Exit::Done };
     missed.worst(limit)
-}
-
-fn hex(bytes: &[u8]) -> String {
-    const DIGITS: &[u8; 16] = b"0123456789abcdef";
-    bytes.iter().flat_map(|byte| [byte >> 4, byte & 15]).map(|half| char::from(DIGITS[usize::from(half)])).collect()
 }

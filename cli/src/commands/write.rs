@@ -2,12 +2,12 @@
 use std::path::Path;
 
 use super::analysis::{Results, Scope};
-use super::load::Loaded;
 use crate::exit::Exit;
+use crate::model_file::LoadedModel;
 use crate::output::figures::Figures;
 use crate::output::folder::{FolderError, Staging};
 use crate::output::svg::field::Quantity;
-use crate::output::{Provenance, csv, json, svg, vtk};
+use crate::output::{Provenance, csv, is_output_name, json, svg, vtk};
 use crate::progress::Reporter;
 
 /// Everything the files are made from.
@@ -18,7 +18,7 @@ pub(crate) struct Job<'a> {
     /// Results with fields.
     pub results: &'a Results,
     /// Model with the files it came from.
-    pub loaded: &'a Loaded,
+    pub loaded: &'a LoadedModel,
     /// Provenance.
     pub provenance: &'a Provenance,
     /// A firm's own letterhead template.
@@ -67,12 +67,27 @@ pub(crate) fn all(job: &Job<'_>, mut staging: Staging, reporter: &Reporter) -> R
     for (name, text) in pictures(job) {
         staging.write(name, text.as_bytes())?;
     }
-    for (name, bytes) in &job.loaded.files {
-        staging.write(name, bytes)?;
+    for (name, bytes) in model_files(job.loaded) {
+        staging.write(&name, bytes)?;
     }
     let shown = staging.target().display().to_string();
     let names = staging.commit()?;
     Ok(format!("wrote {} files to {shown}", names.len()))
+}
+
+/// The model file and what it names, under names that no output has.
+fn model_files(loaded: &LoadedModel) -> Vec<(String, &[u8])> {
+    let mut files = vec![(loaded.file_name.clone(), loaded.text.as_bytes())];
+    files.extend(loaded.extra_files.iter().map(|file| {
+        let inside = Path::new(&file.name).components().all(|part| matches!(part, std::path::Component::Normal(_)));
+        (if inside { file.name.clone() } else { file.file_name() }, file.bytes.as_slice())
+    }));
+    for (name, _) in &mut files {
+        if is_output_name(name) {
+            *name = format!("model-{name}");
+        }
+    }
+    files
 }
 
 /// One file a depth and the series.

@@ -3,6 +3,7 @@
 //! Axes of the files: X landward, Y up, Z along the cliff (0). Tensors have the six components XX YY ZZ XY YZ XZ. Units stand in the
 //! array names. A node is written once for each value that it has, so that every layer keeps its own stress at a contact.
 use std::collections::BTreeMap;
+use std::fmt::Write;
 
 use checker::outcome::FieldSnapshot;
 use vtkio::model::{
@@ -45,11 +46,11 @@ pub fn series(depths_m: &[f64], rock_names: &[String]) -> String {
     let mut text = String::from("<?xml version=\"1.0\"?>\n<!-- the time of each file is the undercut depth (horizontal) in m -->\n");
     for (i, name) in rock_names.iter().enumerate() {
         // A comment must not hold "--".
-        text.push_str(&format!("<!-- rock_id {i}: {} -->\n", name.replace('-', "\u{2010}").replace(char::is_control, " ")));
+        let _ = writeln!(text, "<!-- rock_id {i}: {} -->", name.replace('-', "\u{2010}").replace(char::is_control, " "));
     }
     text.push_str("<VTKFile type=\"Collection\" version=\"0.1\">\n  <Collection>\n");
     for (depth, name) in depths_m.iter().zip(file_names(depths_m)) {
-        text.push_str(&format!("    <DataSet timestep=\"{depth}\" part=\"0\" file=\"{name}\"/>\n"));
+        let _ = writeln!(text, "    <DataSet timestep=\"{depth}\" part=\"0\" file=\"{name}\"/>");
     }
     text.push_str("  </Collection>\n</VTKFile>\n");
     text
@@ -64,9 +65,11 @@ pub fn field(snapshot: &FieldSnapshot, linear_triangles: bool) -> Result<Vec<u8>
     let format = |message: String| FieldError::Format { depth_m: snapshot.depth_m, message };
     let cells = cells(&points.triangles, linear_triangles);
     let per_cell = if linear_triangles { 4 } else { 1 };
-    let rock: Vec<i32> = snapshot.mesh.regions.iter().flat_map(|region| std::iter::repeat_n(*region as i32, per_cell)).collect();
+    let rock: Vec<i32> = snapshot.mesh.regions.iter().flat_map(|region| std::iter::repeat_n(region.cast_signed(), per_cell)).collect();
     let grid = UnstructuredGridPiece {
-        points: IOBuffer::F64(points.owner.iter().flat_map(|node| points.coordinates(snapshot, *node)).collect()),
+        points: IOBuffer::F64(
+            points.owner.iter().map(|node| snapshot.mesh.points_m[*node as usize]).flat_map(|[x, z]| [x, z, 0.0]).collect(),
+        ),
         cells,
         data: Attributes {
             point: points.arrays(snapshot).into_iter().map(Attribute::DataArray).collect(),
@@ -123,11 +126,6 @@ impl Points {
             points.triangles.push(triangle);
         }
         Ok(points)
-    }
-
-    fn coordinates(&self, snapshot: &FieldSnapshot, node: u32) -> [f64; 3] {
-        let [x, z] = snapshot.mesh.points_m[node as usize];
-        [x, z, 0.0]
     }
 
     fn arrays(&self, snapshot: &FieldSnapshot) -> Vec<DataArray> {

@@ -2,7 +2,6 @@
 use std::path::PathBuf;
 
 use super::super::analysis::{Results, Scope};
-use super::super::load::Loaded;
 use super::{Job, all};
 use crate::interrupt::Interrupt;
 use crate::output::fixture;
@@ -21,7 +20,9 @@ fn assess_writes_every_file_of_the_contract() {
     let mut fields = fixture::fields();
     fields.sort_by(|a, b| a.depth_m.total_cmp(&b.depth_m));
     let results = Results { outcome: fixture::outcome(), fields };
-    let loaded = Loaded { model: fixture::model(), files: vec![("gannet-ledge.toml".into(), fixture::MODEL_TEXT.into())] };
+    let starter = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("../demo-models/ostrel-head/ostrel-head.toml");
+    let mut loaded = crate::model_file::read(&starter).unwrap();
+    (loaded.model, loaded.text, loaded.file_name) = (fixture::model(), fixture::MODEL_TEXT.into(), "gannet-ledge.toml".into());
     let job = Job {
         scope: Scope::Assess,
         results: &results,

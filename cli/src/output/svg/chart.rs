@@ -234,7 +234,7 @@ fn bar(svg: &mut Svg, plot: &Plot, row: &HangsOn, ends: [Option<f64>; 2], top: f
     for (i, (x, end)) in at.iter().zip(ends).enumerate() {
         let word = ["low", "high"][i];
         let text = end.map_or_else(|| format!("{word}: not reached \u{2192}"), |value| format!("{word} {}", words::fixed(value, 2)));
-        let outer_left = if at[0] == at[1] { i == 0 } else { *x <= middle };
+        let outer_left = if (at[0] - at[1]).abs() < 1e-9 { i == 0 } else { *x <= middle };
         let (dx, anchor) = if outer_left || right - 90.0 < *x { (-5.0, Anchor::End) } else { (5.0, Anchor::Start) };
         svg.text([x + dx, top + 20.0], anchor, "halo small", &text);
     }

@@ -38,17 +38,17 @@ pub fn rock(snapshot: &FieldSnapshot, frame: &Frame, region: u32) -> String {
 
 /// Sides of the mesh that only one triangle has, as point pairs.
 pub fn free_sides(snapshot: &FieldSnapshot) -> Vec<[PointXz; 2]> {
-    let mut sides = std::collections::BTreeMap::new();
+    let mut sides = std::collections::BTreeSet::new();
     for nodes in &snapshot.mesh.triangles {
         // A side as its two halves, so that curved ones stay curved.
         for [a, m, b] in [[0, 3, 1], [1, 4, 2], [2, 5, 0]] {
             for [from, to] in [[nodes[a], nodes[m]], [nodes[m], nodes[b]]] {
-                if sides.remove(&(to, from)).is_none() {
-                    sides.insert((from, to), ());
+                if !sides.remove(&(to, from)) {
+                    sides.insert((from, to));
                 }
             }
         }
     }
     let point = |node: u32| snapshot.mesh.points_m[node as usize];
-    sides.into_keys().map(|(a, b)| [point(a), point(b)]).collect()
+    sides.into_iter().map(|(a, b)| [point(a), point(b)]).collect()
 }

@@ -1,4 +1,6 @@
 //! The section to scale: layers, water, undercut as surveyed and at the critical depth, rupture line, ground lost.
+use std::fmt::Write;
+
 use checker::model::{Groundwater, Model, SeaLevel};
 use checker::outcome::{FieldSnapshot, Outcome, PointXz};
 
@@ -161,7 +163,7 @@ fn pixels(units: &str) -> String {
     let mut number = String::new();
     let flush = |number: &mut String, out: &mut String| {
         if let Ok(value) = number.parse::<f64>() {
-            out.push_str(&format!("{} ", short(value / super::contour::UNITS_PER_PX)));
+            let _ = write!(out, "{} ", short(value / super::contour::UNITS_PER_PX));
         }
         number.clear();
     };

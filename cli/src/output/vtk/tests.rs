@@ -20,7 +20,7 @@ fn coordinates_come_back_bit_for_bit_and_cells_are_quadratic() {
     let (connectivity, _) = grid.cells.cell_verts.into_xml();
     for (i, node) in snapshot.mesh.triangles.iter().flatten().enumerate() {
         let at = 3 * connectivity[i] as usize;
-        assert_eq!([points[at], points[at + 1]], snapshot.mesh.points_m[*node as usize]);
+        assert_eq!([points[at], points[at + 1]].map(f64::to_bits), snapshot.mesh.points_m[*node as usize].map(f64::to_bits));
     }
     let text = String::from_utf8(bytes).unwrap();
     assert!(text.contains("type=\"Int64\" Name=\"connectivity\""));
