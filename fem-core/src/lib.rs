@@ -16,7 +16,9 @@ pub mod tensor;
 pub mod assembly;
 pub mod supports;
 
+mod direct;
 pub mod floating;
+pub mod system;
 
 pub mod locate;
 pub mod recovery;
