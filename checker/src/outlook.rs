@@ -7,7 +7,11 @@
 //!
 //! A pure function of its input: every sample has a random stream of its own, sums run in index order, so that the same seed
 //! gives the same bits for any number of threads. Equations (7.x) stand in `docs/theory.md`.
+pub mod critical;
+pub mod demand_model;
 pub mod form;
 pub mod normal;
+pub mod random;
 pub mod reliability;
+pub mod sampling;
 pub mod variables;
