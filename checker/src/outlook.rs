@@ -10,8 +10,11 @@
 pub mod critical;
 pub mod demand_model;
 pub mod form;
+pub mod growth;
 pub mod normal;
 pub mod random;
+pub mod rates;
 pub mod reliability;
 pub mod sampling;
 pub mod variables;
+pub mod years;

@@ -5,7 +5,7 @@
 mod estimate;
 mod mixture;
 
-pub use estimate::{Estimate, agreement, effective_sample_size, ratio_estimate, weighted_estimate, wilson_interval};
+pub use estimate::{Estimate, Tally, agreement, effective_sample_size, weighted_estimate, wilson_interval};
 pub use mixture::{LimitFunction, Mixture, modes_of};
 
 use super::random::Streams;

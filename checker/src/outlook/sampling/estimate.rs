@@ -27,50 +27,108 @@ pub fn wilson_interval(p: f64, n: f64) -> [f64; 2] {
     [low.max(0.0), high.min(1.0)]
 }
 
-/// Mean of `weight x value`, the values being chances between 0 and 1; sums in index order.
+/// Sums of weighted samples, to be added to in index order.
 ///
-/// `p = sum w v / n`, `se^2 = sum (w v - p)^2 / (n (n - 1))`. With equal weights the interval is Wilson's, which is never too
-/// narrow for values between 0 and 1; with unequal weights it is `p +- 1.96 se`.
+/// Each sample brings a value (a chance between 0 and 1), a weight (how it was drawn) and a membership (0 to 1: how far it belongs
+/// to what is given, for example that the cliff stands).
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct Tally {
+    n: f64,
+    /// Smallest and largest weight.
+    weights: Option<[f64; 2]>,
+    wv: f64,
+    wv2: f64,
+    wm: f64,
+    wmv: f64,
+    wm2: f64,
+    wm2v: f64,
+    wm2v2: f64,
+}
+
+impl Tally {
+    /// Adds one sample.
+    pub fn add(&mut self, value: f64, membership: f64, weight: f64) {
+        let (wv, wm) = (weight * value, weight * membership);
+        self.n += 1.0;
+        self.weights = Some(self.weights.map_or([weight; 2], |[low, high]| [low.min(weight), high.max(weight)]));
+        self.wv += wv;
+        self.wv2 += wv * wv;
+        self.wm += wm;
+        self.wmv += wm * value;
+        self.wm2 += wm * wm;
+        self.wm2v += wm * wm * value;
+        self.wm2v2 += wm * wm * value * value;
+    }
+
+    /// Adds the sums of further samples.
+    pub fn merge(&mut self, other: &Self) {
+        self.n += other.n;
+        self.weights = match (self.weights, other.weights) {
+            (Some(a), Some(b)) => Some([a[0].min(b[0]), a[1].max(b[1])]),
+            (a, b) => a.or(b),
+        };
+        self.wv += other.wv;
+        self.wv2 += other.wv2;
+        self.wm += other.wm;
+        self.wmv += other.wmv;
+        self.wm2 += other.wm2;
+        self.wm2v += other.wm2v;
+        self.wm2v2 += other.wm2v2;
+    }
+
+    /// Mean of `weight x value` over all samples, membership left aside.
+    ///
+    /// `p = sum w v / n`, `se^2 = (sum (w v)^2 - n p^2) / (n (n - 1))`. With equal weights the interval is Wilson's, which is never
+    /// too narrow for values between 0 and 1; with unequal weights it is `p +- 1.96 se`.
+    ///
+    /// # Panics
+    /// If there are fewer than two samples.
+    pub fn mean(&self) -> Estimate {
+        assert!(2.0 <= self.n, "an error needs two samples, got {}", self.n);
+        let probability = self.wv / self.n;
+        let scatter = (self.wv2 - self.n * probability * probability).max(0.0);
+        let standard_error = (scatter / (self.n * (self.n - 1.0))).sqrt();
+        let interval =
+            if self.plain() { wilson_interval(probability.clamp(0.0, 1.0), self.n) } else { around(probability, standard_error) };
+        Estimate { probability, standard_error, interval }
+    }
+
+    /// Mean of the values among the members, `p = sum w m v / sum w m`; `None` when nobody belongs.
+    ///
+    /// Error by the delta method, `se^2 = sum (w m (v - p))^2 / (sum w m)^2`; with equal weights the interval is Wilson's for the
+    /// effective number of members (eq. (7.10)).
+    pub fn ratio(&self) -> Option<Estimate> {
+        if self.wm <= 0.0 {
+            return None;
+        }
+        let p = self.wmv / self.wm;
+        let scatter = (self.wm2v2 - 2.0 * p * self.wm2v + p * p * self.wm2).max(0.0);
+        let standard_error = scatter.sqrt() / self.wm;
+        let interval = if self.plain() { wilson_interval(p.clamp(0.0, 1.0), self.effective_members()) } else { around(p, standard_error) };
+        Some(Estimate { probability: p, standard_error, interval })
+    }
+
+    /// Kish's effective number of members, `(sum w m)^2 / sum (w m)^2`.
+    pub fn effective_members(&self) -> f64 {
+        if 0.0 < self.wm2 { self.wm * self.wm / self.wm2 } else { 0.0 }
+    }
+
+    fn plain(&self) -> bool {
+        self.weights.is_none_or(|[low, high]| high <= low)
+    }
+}
+
+/// [`Tally::mean`] of slices.
 ///
 /// # Panics
 /// If the lengths differ or there are fewer than two samples.
 pub fn weighted_estimate(values: &[f64], weights: &[f64]) -> Estimate {
     assert_eq!(values.len(), weights.len(), "values and weights");
-    assert!(2 <= values.len(), "an error needs two samples");
-    let n = values.len() as f64;
-    let probability = values.iter().zip(weights).map(|(v, w)| v * w).sum::<f64>() / n;
-    let scatter: f64 = values.iter().zip(weights).map(|(v, w)| (v * w - probability).powi(2)).sum();
-    let standard_error = (scatter / (n * (n - 1.0))).sqrt();
-    let plain = weights.windows(2).all(|w| (w[0] - w[1]).abs() <= 0.0);
-    let interval = if plain { wilson_interval(probability.clamp(0.0, 1.0), n) } else { around(probability, standard_error) };
-    Estimate { probability, standard_error, interval }
-}
-
-/// Mean of the values among samples with a known chance of belonging: `p = sum w m v / sum w m`, for what is given (it stands, it fell).
-///
-/// Error by the delta method, `se^2 = sum (w m (v - p))^2 / (sum w m)^2`; an interval from the effective sample size by Wilson.
-///
-/// `None` when no sample belongs.
-///
-/// # Panics
-/// If the lengths differ.
-pub fn ratio_estimate(values: &[f64], membership: &[f64], weights: &[f64]) -> Option<Estimate> {
-    assert_eq!(values.len(), weights.len(), "values and weights");
-    assert_eq!(values.len(), membership.len(), "values and membership");
-    let total: f64 = membership.iter().zip(weights).map(|(m, w)| m * w).sum();
-    if total <= 0.0 {
-        return None;
+    let mut tally = Tally::default();
+    for (value, weight) in values.iter().zip(weights) {
+        tally.add(*value, 1.0, *weight);
     }
-    let probability = values.iter().zip(membership).zip(weights).map(|((v, m), w)| v * m * w).sum::<f64>() / total;
-    let scatter: f64 = values.iter().zip(membership).zip(weights).map(|((v, m), w)| (w * m * (v - probability)).powi(2)).sum();
-    let standard_error = scatter.sqrt() / total;
-    let own: Vec<f64> = membership.iter().zip(weights).map(|(m, w)| m * w).collect();
-    let interval = if weights.windows(2).all(|w| (w[0] - w[1]).abs() <= 0.0) {
-        wilson_interval(probability.clamp(0.0, 1.0), effective_sample_size(&own))
-    } else {
-        around(probability, standard_error)
-    };
-    Some(Estimate { probability, standard_error, interval })
+    tally.mean()
 }
 
 /// Kish's effective sample size, `(sum w)^2 / sum w^2`.

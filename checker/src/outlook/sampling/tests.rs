@@ -1,6 +1,4 @@
-use super::{
-    Draws, LimitFunction, Mixture, agreement, effective_sample_size, modes_of, ratio_estimate, weighted_estimate, wilson_interval,
-};
+use super::{Draws, LimitFunction, Mixture, Tally, agreement, effective_sample_size, modes_of, weighted_estimate, wilson_interval};
 use crate::model::Uncertain;
 use crate::outlook::critical::{SearchParams, critical_depths};
 use crate::outlook::demand_model::tests::fibre;
@@ -113,9 +111,13 @@ fn wilson_is_never_empty() {
 
 #[test]
 fn ratios_and_effective_sizes() {
-    let given = ratio_estimate(&[1.0, 0.0, 1.0, 1.0], &[1.0, 1.0, 0.0, 1.0], &[1.0; 4]).unwrap();
-    assert!((given.probability - 2.0 / 3.0).abs() < 1e-15);
-    assert_eq!(ratio_estimate(&[1.0], &[0.0], &[1.0]), None);
+    let mut given = Tally::default();
+    assert_eq!(given.ratio(), None);
+    for (value, member) in [(1.0, 1.0), (0.0, 1.0), (1.0, 0.0), (1.0, 1.0)] {
+        given.add(value, member, 1.0);
+    }
+    assert!((given.ratio().unwrap().probability - 2.0 / 3.0).abs() < 1e-15);
+    assert!((given.effective_members() - 3.0).abs() < 1e-15);
     assert!((effective_sample_size(&[1.0, 1.0, 2.0]) - 16.0 / 6.0).abs() < 1e-15);
     assert!(effective_sample_size(&[]) <= 0.0);
 }
