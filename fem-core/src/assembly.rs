@@ -11,7 +11,8 @@ mod forces;
 mod loads;
 
 pub use forces::{internal_forces, internal_forces_of};
-pub use loads::{body_force, edge_pressure, edge_traction, initial_stress, pore_pressure};
+pub use loads::{body_force, body_force_of, edge_pressure, edge_traction, initial_stress, initial_stress_of, pore_pressure};
+pub(crate) use loads::{pieces as edge_pieces, side_point, side_slope, walk_edge};
 
 /// "This unknown is prescribed" in [`DofMap::free_of_dof`].
 pub const PRESCRIBED: u32 = u32::MAX;

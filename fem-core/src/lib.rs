@@ -14,12 +14,17 @@ pub mod quadrature;
 pub mod tensor;
 
 pub mod assembly;
-pub mod supports;
-
 mod direct;
 pub mod floating;
+pub mod supports;
 pub mod system;
 
-pub mod locate;
+pub mod error;
+pub mod norms;
 pub mod recovery;
 pub mod stress;
+
+pub mod crossing;
+pub mod locate;
+pub mod sample;
+pub mod section;

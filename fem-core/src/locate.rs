@@ -84,6 +84,27 @@ impl Locator {
         }
     }
 
+    /// Elements whose boxes may meet the segment, ascending, each once.
+    pub(crate) fn near_segment(&self, from_m: [f64; 2], to_m: [f64; 2]) -> Vec<u32> {
+        let (low, high) = if from_m[1] <= to_m[1] { (from_m, to_m) } else { (to_m, from_m) };
+        let rise = high[1] - low[1];
+        let x_at = |y: f64| if rise <= 0.0 { low[0] } else { low[0] + (high[0] - low[0]) * ((y - low[1]) / rise).clamp(0.0, 1.0) };
+        let mut found = Vec::new();
+        for j in self.cell_of(low)[1]..=self.cell_of(high)[1] {
+            // The part of the segment in this row of cells; the outermost rows reach to infinity.
+            let bottom = if j == 0 { low[1] } else { self.origin_m[1] + j as f64 * self.cell_m };
+            let top = if j + 1 == self.n_y { high[1] } else { self.origin_m[1] + (j + 1) as f64 * self.cell_m };
+            let ends = if rise <= 0.0 { [low[0], high[0]] } else { [x_at(bottom), x_at(top)] };
+            let (i0, i1) = (self.cell_of([ends[0].min(ends[1]), bottom])[0], self.cell_of([ends[0].max(ends[1]), bottom])[0]);
+            for cell in (i0..=i1).map(|i| j * self.n_x + i) {
+                found.extend_from_slice(&self.elements[self.starts[cell] as usize..self.starts[cell + 1] as usize]);
+            }
+        }
+        found.sort_unstable();
+        found.dedup();
+        found
+    }
+
     /// The element that holds the point, or the nearest one within `reach_m`; `None` farther away or at a point that is not finite.
     /// On a side the lowest element number wins.
     pub fn locate(&self, mesh: &Mesh, point_m: [f64; 2], reach_m: f64) -> Option<Located> {

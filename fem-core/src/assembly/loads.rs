@@ -11,8 +11,17 @@ const SIDE_POINTS: usize = 4;
 ///
 /// `force_n_per_m3(element, [x, y])` is the force per volume in N/m³. Exact for constant `b`, also with curved sides.
 pub fn body_force(mesh: &Mesh, force_n_per_m3: &dyn Fn(usize, [f64; 2]) -> [f64; 2]) -> Vec<f64> {
+    body_force_of(mesh, force_n_per_m3, 0..mesh.triangles.len() as u32)
+}
+
+/// [`body_force`] of the listed elements only.
+pub fn body_force_of(
+    mesh: &Mesh,
+    force_n_per_m3: &dyn Fn(usize, [f64; 2]) -> [f64; 2],
+    elements: impl IntoIterator<Item = u32>,
+) -> Vec<f64> {
     let mut loads = vec![0.0; 2 * mesh.points_m.len()];
-    for element in 0..mesh.triangles.len() {
+    for element in elements.into_iter().map(|e| e as usize) {
         let points = element_points_m(mesh, element);
         let mut f = [[0.0; 2]; 6];
         for (xi, weight) in TRIANGLE_DEGREE_4 {
@@ -32,8 +41,17 @@ pub fn body_force(mesh: &Mesh, force_n_per_m3: &dyn Fn(usize, [f64; 2]) -> [f64;
 ///
 /// `stress_pa(element, [x, y])` is `[xx, yy, xy]` in Pa, tension positive. Exact for linear `σ0`, also with curved sides.
 pub fn initial_stress(mesh: &Mesh, stress_pa: &dyn Fn(usize, [f64; 2]) -> [f64; 3]) -> Vec<f64> {
+    initial_stress_of(mesh, stress_pa, 0..mesh.triangles.len() as u32)
+}
+
+/// [`initial_stress`] of the listed elements only.
+pub fn initial_stress_of(
+    mesh: &Mesh,
+    stress_pa: &dyn Fn(usize, [f64; 2]) -> [f64; 3],
+    elements: impl IntoIterator<Item = u32>,
+) -> Vec<f64> {
     let mut loads = vec![0.0; 2 * mesh.points_m.len()];
-    for element in 0..mesh.triangles.len() {
+    for element in elements.into_iter().map(|e| e as usize) {
         let points = element_points_m(mesh, element);
         let mut f = [[0.0; 2]; 6];
         for (xi, weight) in TRIANGLE_DEGREE_4 {
@@ -72,26 +90,45 @@ pub fn edge_traction(
     traction_pa: &dyn Fn([f64; 2], [f64; 2]) -> [f64; 2],
 ) -> Vec<f64> {
     let mut loads = vec![0.0; 2 * mesh.points_m.len()];
-    let rule = gauss_unit(SIDE_POINTS);
     for edge in edges {
-        let outward = if edge.left == NO_ELEMENT { -1.0 } else { 1.0 };
         let points = edge.nodes.map(|node| mesh.points_m[node as usize]);
-        for piece in pieces(&points, breaks_m).windows(2) {
-            for &(t, weight) in &rule {
-                let s = piece[0] + (piece[1] - piece[0]) * t;
-                let (n, slope) = (side_shape(s), side_slope(&points, s));
-                let length = slope[0].hypot(slope[1]);
-                let normal = [outward * slope[1] / length, -outward * slope[0] / length];
-                let force = traction_pa(side_point(&points, s), normal);
-                let w = weight * (piece[1] - piece[0]) * length;
-                for (&node, n) in edge.nodes.iter().zip(n) {
-                    loads[2 * node as usize] += w * n * force[0];
-                    loads[2 * node as usize + 1] += w * n * force[1];
-                }
+        walk_edge(mesh, edge, &pieces(&points, breaks_m), &mut |at| {
+            let force = traction_pa(at.point_m, at.normal);
+            for (&node, n) in edge.nodes.iter().zip(side_shape(at.s)) {
+                loads[2 * node as usize] += at.weight_m * n * force[0];
+                loads[2 * node as usize + 1] += at.weight_m * n * force[1];
             }
-        }
+        });
     }
     loads
+}
+
+/// An integration point on a side.
+pub(crate) struct EdgePoint {
+    /// Parameter along the side.
+    pub(crate) s: f64,
+    /// Coordinates, m.
+    pub(crate) point_m: [f64; 2],
+    /// Unit normal out of the element that the side counts to.
+    pub(crate) normal: [f64; 2],
+    /// Length that the point stands for, m.
+    pub(crate) weight_m: f64,
+}
+
+/// Visits the Gauss points of a side, piece by piece between ascending parameters.
+pub(crate) fn walk_edge(mesh: &Mesh, edge: &TaggedEdge, parameters: &[f64], visit: &mut dyn FnMut(EdgePoint)) {
+    let outward = if edge.left == NO_ELEMENT { -1.0 } else { 1.0 };
+    let points = edge.nodes.map(|node| mesh.points_m[node as usize]);
+    let rule = gauss_unit(SIDE_POINTS);
+    for piece in parameters.windows(2) {
+        for &(t, weight) in &rule {
+            let s = piece[0] + (piece[1] - piece[0]) * t;
+            let slope = side_slope(&points, s);
+            let length = slope[0].hypot(slope[1]);
+            let normal = [outward * slope[1] / length, -outward * slope[0] / length];
+            visit(EdgePoint { s, point_m: side_point(&points, s), normal, weight_m: weight * (piece[1] - piece[0]) * length });
+        }
+    }
 }
 
 /// Loads of a normal pressure in Pa on sides, positive in compression: traction `−p n`. See [`edge_traction`].
@@ -103,22 +140,24 @@ pub fn edge_pressure(mesh: &Mesh, edges: &[TaggedEdge], breaks_m: &[[f64; 2]], p
 }
 
 /// Quadratic shape functions on a side, parameter 0 at the start, 1 at the end; order start, end, middle.
-fn side_shape(s: f64) -> [f64; 3] {
+pub(crate) fn side_shape(s: f64) -> [f64; 3] {
     [(1.0 - s) * (1.0 - 2.0 * s), s * (2.0 * s - 1.0), 4.0 * s * (1.0 - s)]
 }
 
-fn side_point(points_m: &[[f64; 2]; 3], s: f64) -> [f64; 2] {
+/// Point in m at parameter `s` of a side given by start, end, middle.
+pub(crate) fn side_point(points_m: &[[f64; 2]; 3], s: f64) -> [f64; 2] {
     let n = side_shape(s);
     [0, 1].map(|k| n[0] * points_m[0][k] + n[1] * points_m[1][k] + n[2] * points_m[2][k])
 }
 
-fn side_slope(points_m: &[[f64; 2]; 3], s: f64) -> [f64; 2] {
+/// Derivative of [`side_point`] in m.
+pub(crate) fn side_slope(points_m: &[[f64; 2]; 3], s: f64) -> [f64; 2] {
     let d = [4.0 * s - 3.0, 4.0 * s - 1.0, 4.0 - 8.0 * s];
     [0, 1].map(|k| d[0] * points_m[0][k] + d[1] * points_m[1][k] + d[2] * points_m[2][k])
 }
 
 /// Parameters 0, those of the breaks on the side, 1, ascending.
-fn pieces(points_m: &[[f64; 2]; 3], breaks_m: &[[f64; 2]]) -> Vec<f64> {
+pub(crate) fn pieces(points_m: &[[f64; 2]; 3], breaks_m: &[[f64; 2]]) -> Vec<f64> {
     let mut cuts = vec![0.0];
     cuts.extend(breaks_m.iter().filter_map(|&b| parameter_on_side(points_m, b)));
     cuts.push(1.0);
