@@ -2,6 +2,7 @@
 pub mod csv;
 pub mod figures;
 pub mod folder;
+pub mod html;
 pub mod json;
 pub mod svg;
 pub mod text;

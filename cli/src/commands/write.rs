@@ -7,7 +7,7 @@ use crate::model_file::LoadedModel;
 use crate::output::figures::Figures;
 use crate::output::folder::{FolderError, Staging};
 use crate::output::svg::field::Quantity;
-use crate::output::{Provenance, csv, is_output_name, json, svg, vtk};
+use crate::output::{Provenance, csv, html, is_output_name, json, svg, vtk};
 use crate::progress::Reporter;
 
 /// Everything the files are made from.
@@ -39,6 +39,9 @@ pub(crate) enum WriteError {
     /// The fields.
     #[error(transparent)]
     Field(#[from] vtk::FieldError),
+    /// The report.
+    #[error("cannot write `report.html`: {0}")]
+    Template(#[from] html::TemplateError),
     /// The table.
     #[error("cannot write `depths.csv`: {0}")]
     Csv(#[from] ::csv::Error),
@@ -49,7 +52,7 @@ impl WriteError {
     pub(crate) fn exit(&self) -> Exit {
         match self {
             Self::NotFinite(_) | Self::Field(_) => Exit::Analysis,
-            Self::Folder(_) | Self::Csv(_) => Exit::File,
+            Self::Folder(_) | Self::Csv(_) | Self::Template(_) => Exit::File,
         }
     }
 }
@@ -64,8 +67,13 @@ pub(crate) fn all(job: &Job<'_>, mut staging: Staging, reporter: &Reporter) -> R
     if matches!(job.scope, Scope::Assess | Scope::Mesh) {
         fields(job, &mut staging, reporter)?;
     }
-    for (name, text) in pictures(job) {
+    let figures = Figures::new(outcome, &job.loaded.model, &job.results.fields);
+    for (name, text) in pictures(job.scope, &figures) {
         staging.write(name, text.as_bytes())?;
+    }
+    if job.scope == Scope::Assess {
+        reporter.step("writing the report", 0, 1);
+        staging.write("report.html", report(job, &figures)?.as_bytes())?;
     }
     for (name, bytes) in model_files(job.loaded) {
         staging.write(&name, bytes)?;
@@ -104,12 +112,11 @@ fn fields(job: &Job<'_>, staging: &mut Staging, reporter: &Reporter) -> Result<(
 }
 
 /// The pictures that the command writes as files.
-fn pictures(job: &Job<'_>) -> Vec<(&'static str, String)> {
-    let figures = Figures::new(&job.results.outcome, &job.loaded.model, &job.results.fields);
+fn pictures(scope: Scope, figures: &Figures<'_>) -> Vec<(&'static str, String)> {
     let mut pictures = Vec::new();
     let Some(surveyed) = figures.surveyed else { return pictures };
     pictures.push(("mesh.svg", svg::mesh::picture(surveyed, figures.outcome, "mesh").file()));
-    if job.scope == Scope::Mesh {
+    if scope == Scope::Mesh {
         return pictures;
     }
     pictures.extend(figures.section().map(|picture| ("section.svg", picture.file())));
@@ -120,11 +127,24 @@ fn pictures(job: &Job<'_>) -> Vec<(&'static str, String)> {
     pictures
 }
 
-/// Reads the letterhead template; the error is a sentence for people.
+fn report(job: &Job<'_>, figures: &Figures<'_>) -> Result<String, html::TemplateError> {
+    html::report(&html::Report {
+        outcome: &job.results.outcome,
+        model: &job.loaded.model,
+        model_text: &job.loaded.text,
+        figures,
+        provenance: job.provenance,
+        letterhead: job.letterhead.as_deref(),
+    })
+}
+
+/// Reads the letterhead template and tries it; the error is a sentence for people.
 #[expect(clippy::disallowed_methods, reason = "the boundary reads files")]
 pub(crate) fn letterhead(path: Option<&Path>) -> Result<Option<String>, String> {
-    path.map(|path| std::fs::read_to_string(path).map_err(|error| format!("cannot read the letterhead `{}`: {error}", path.display())))
-        .transpose()
+    let Some(path) = path else { return Ok(None) };
+    let text = std::fs::read_to_string(path).map_err(|error| format!("cannot read the letterhead `{}`: {error}", path.display()))?;
+    html::check_letterhead(&text).map_err(|error| format!("the letterhead `{}` cannot be used: {error}", path.display()))?;
+    Ok(Some(text))
 }
 
 #[cfg(test)]

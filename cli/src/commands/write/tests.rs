@@ -40,6 +40,7 @@ fn assess_writes_every_file_of_the_contract() {
         "fields/series.pvd",
         "fields/depth-2.30.vtu",
         "gannet-ledge.toml",
+        "report.html",
         "section.svg",
         "mesh.svg",
         "stress-surveyed.svg",
