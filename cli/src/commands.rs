@@ -1,6 +1,8 @@
 //! What each verb of the command line does: reads, calls `checker`, writes, and says how it ended.
 mod analysis;
 mod load;
+mod new;
+mod schema;
 mod section;
 mod write;
 
@@ -10,6 +12,7 @@ use crate::interrupt::Interrupt;
 use crate::progress::say;
 
 pub use analysis::Scope;
+pub use new::STARTER;
 
 /// Carries out one command.
 pub fn run(cli: &Cli) -> Exit {
@@ -22,7 +25,9 @@ pub fn run(cli: &Cli) -> Exit {
         Command::Check(args) => section::run(Scope::Check, args, &interrupt),
         Command::Deepen(args) => section::run(Scope::Deepen, args, &interrupt),
         Command::Mesh(args) => section::run(Scope::Mesh, args, &interrupt),
-        Command::Lab(_) | Command::New(_) | Command::Schema => {
+        Command::New(args) => new::run(&args.file),
+        Command::Schema => schema::run(),
+        Command::Lab(_) => {
             say("error: this command is not available yet");
             Exit::Usage
         }

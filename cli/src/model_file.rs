@@ -11,11 +11,15 @@ mod files;
 pub(crate) mod keys;
 mod kinds;
 mod not_yet;
+mod reference;
+mod schema;
 mod syntax;
 mod tree;
 mod walk;
 
 pub use build::ExtraFile;
+pub use reference::key_reference;
+pub use schema::json_schema;
 
 use crate::diagnostics::{Findings, Source};
 use build::Build;

@@ -2,6 +2,8 @@
 mod scalar;
 mod uncertain;
 
+pub(super) use uncertain::UNCERTAIN;
+
 use super::collect::Collector;
 use super::keys::MODEL;
 use super::kinds::{Field, Kind, Need, Preset, Shape};
