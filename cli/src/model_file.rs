@@ -30,6 +30,7 @@ use files::FileFault;
 use sha2::{Digest, Sha256};
 use std::path::Path;
 use std::sync::Arc;
+use toml::de::DeTable;
 use walk::Walk;
 
 /// A model that was read and checked, with what came with it.
@@ -101,7 +102,11 @@ pub fn from_text(text: String, name: &str, folder: &Path) -> Result<LoadedModel,
         let (findings, _) = collector.finish();
         return Err(Failure { findings, unreadable: false });
     }
-    let table = syntax::parse(&text, &mut collector);
+    let Some(readable) = syntax::check(&text, &mut collector) else {
+        let (findings, _) = collector.finish();
+        return Err(Failure { findings, unreadable: false });
+    };
+    let (table, _) = DeTable::parse_recoverable(&readable);
     let mut walk = Walk { collector: &mut collector, defaults_used: Vec::new() };
     let file = walk.file(table.get_ref(), &table.span());
     let defaults_used = walk.defaults_used;

@@ -38,13 +38,17 @@ fn block<'a>(findings: &'a Findings, one: &'a Located) -> Group<'a> {
     group
 }
 
-/// File, line and column are given apart from the excerpt, which may be a cut line.
+/// The column is given apart from the excerpt where the start of the line is cut off.
 fn with_excerpt<'a>(group: Group<'a>, source: &Source, place: &Place, kind: AnnotationKind) -> Group<'a> {
     let excerpt = excerpt(&source.text, place.span.start, place.span.end);
-    let origin = Origin::path(clean(&source.name)).line(excerpt.position.line).char_column(excerpt.position.column);
+    let (name, is_cut) = (clean(&source.name), excerpt.is_cut);
     let annotation = kind.span(excerpt.from..excerpt.to);
     let snippet = Snippet::source(excerpt.text).line_start(excerpt.position.line).fold(false).annotation(annotation);
-    group.element(origin).element(snippet)
+    if is_cut {
+        let origin = Origin::path(name).line(excerpt.position.line).char_column(excerpt.position.column);
+        return group.element(origin).element(snippet);
+    }
+    group.element(snippet.path(name))
 }
 
 fn counts(findings: &Findings) -> String {

@@ -49,6 +49,8 @@ pub(super) struct Excerpt {
     pub(super) from: usize,
     /// To here.
     pub(super) to: usize,
+    /// Whether the start of the line is cut off.
+    pub(super) is_cut: bool,
     /// Line and column in the whole text.
     pub(super) position: Position,
 }
@@ -64,7 +66,8 @@ pub(super) fn excerpt(text: &str, from: usize, to: usize) -> Excerpt {
     let marked = first_chars(&text[from..to], LONGEST_EXCERPT / 2);
     let after = if marked.len() < to - from { "" } else { first_chars(&text[to..line_end], LONGEST_EXCERPT / 2) };
     let mut shown = String::new();
-    if before.len() < from - line_start {
+    let is_cut = before.len() < from - line_start;
+    if is_cut {
         shown.push('…');
     }
     shown += &printable(before);
@@ -75,7 +78,7 @@ pub(super) fn excerpt(text: &str, from: usize, to: usize) -> Excerpt {
     if marked.len() + after.len() < line_end - from {
         shown.push('…');
     }
-    Excerpt { text: shown, from: start, to: end, position: position(text, from) }
+    Excerpt { text: shown, from: start, to: end, is_cut, position: position(text, from) }
 }
 
 /// The same text with a visible stand-in for every control character, so that columns stay.

@@ -84,7 +84,7 @@ impl Build<'_> {
         if let Some(index) = names.iter().position(|known| known == name) {
             return index;
         }
-        if name.is_empty() {
+        if name.is_empty() || self.collector.key_is_on_broken_line(name) {
             return usize::MAX;
         }
         let diagnostic = Diagnostic::error("name.unknown", at, format!("there is no {what} named {:?}", clip(name, 60)));

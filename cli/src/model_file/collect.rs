@@ -81,17 +81,41 @@ impl Collector {
         self.broken_lines.iter().any(|line| self.sources[0].text[line.clone()].contains(key))
     }
 
+    /// Lines with a syntax error.
+    pub(crate) fn broken_lines(&self) -> &[Range<usize>] {
+        &self.broken_lines
+    }
+
+    /// Whether a byte of the model file stands on a line with a syntax error.
+    pub(crate) fn is_on_broken_line(&self, byte: usize) -> bool {
+        self.broken_lines.iter().any(|line| line.start <= byte && byte <= line.end)
+    }
+
+    /// Whether a byte stands on the header of a table that holds a broken line: what that table lacks may stand there.
+    fn is_header_of_broken_table(&self, byte: usize) -> bool {
+        if self.broken_lines.is_empty() {
+            return false;
+        }
+        let text = &self.sources[0].text;
+        let start = text[..byte].rfind('\n').map_or(0, |i| i + 1);
+        let end = text[byte..].find("\n[").map_or(text.len(), |i| byte + i);
+        text[start..].starts_with('[') && self.broken_lines.iter().any(|line| start <= line.start && line.start < end)
+    }
+
     /// Number of errors so far.
     pub(crate) fn n_errors(&self) -> usize {
         self.list.iter().filter(|one| one.diagnostic.severity == checker::diagnostic::Severity::Error).count()
     }
 
     fn push(&mut self, diagnostic: Diagnostic, place: Option<Place>) {
-        let on_broken_line = place.as_ref().is_some_and(|place| {
-            place.source == 0 && self.broken_lines.iter().any(|line| line.start <= place.span.start && place.span.start <= line.end)
-        });
+        if self.list.len() >= MOST_KEPT {
+            return;
+        }
+        let is_consequence =
+            |start| self.is_on_broken_line(start) || (diagnostic.code != "key.missing" && self.is_header_of_broken_table(start));
+        let on_broken_line = place.as_ref().is_some_and(|place| place.source == 0 && is_consequence(place.span.start));
         let known = self.list.iter().any(|one| one.diagnostic.at == diagnostic.at && one.diagnostic.message == diagnostic.message);
-        if on_broken_line || (known && !diagnostic.at.is_empty()) || self.list.len() >= MOST_KEPT {
+        if on_broken_line || (known && !diagnostic.at.is_empty()) {
             return;
         }
         let also = diagnostic.also.iter().filter_map(|path| self.places.find(path)).collect();

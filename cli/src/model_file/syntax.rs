@@ -1,14 +1,22 @@
-//! Syntax: text to a tree of keys and values with their places, every syntax error reported.
+//! Syntax: every error reported, and the rest of the text made fit to be read.
 use super::collect::Collector;
 use checker::diagnostic::Diagnostic;
-use toml::Spanned;
 use toml::de::DeTable;
 
-/// Parses the model text (the first source of the collector); what could be made out of a broken file is returned too.
-pub(super) fn parse<'t>(text: &'t str, collector: &mut Collector) -> Spanned<DeTable<'t>> {
-    let (table, errors) = DeTable::parse_recoverable(text);
+/// Largest number of syntax errors that are reported.
+const MOST_ERRORS: usize = 200;
+
+/// Reports every syntax error of the model text (the first source of the collector).
+///
+/// Returns the text with its broken lines blanked out, byte for byte, so that the rest can be looked at too; where that breaks more
+/// than it mends, the text as it is; `None` where so much is broken that the rest says nothing.
+pub(super) fn check(text: &str, collector: &mut Collector) -> Option<String> {
+    let (_, errors) = DeTable::parse_recoverable(text);
+    if errors.is_empty() {
+        return Some(text.to_owned());
+    }
     let mut last_line = usize::MAX;
-    for error in errors.iter().take(200) {
+    for error in errors.iter().take(MOST_ERRORS) {
         let span = error.span().map_or(0..0, |span| span.start.min(text.len())..span.end.min(text.len()));
         let line_start = text[..floor(text, span.start)].rfind('\n').map_or(0, |i| i + 1);
         if line_start == last_line {
@@ -30,7 +38,24 @@ pub(super) fn parse<'t>(text: &'t str, collector: &mut Collector) -> Spanned<DeT
         };
         collector.add_syntax(diagnostic, floor(text, span.start)..span.end);
     }
-    table
+    if errors.len() > MOST_ERRORS {
+        return None;
+    }
+    let mended = mended(text, collector);
+    let (_, rest) = DeTable::parse_recoverable(&mended);
+    let is_known = |error: &toml::de::Error| error.span().is_some_and(|span| collector.is_on_broken_line(span.start));
+    Some(if rest.iter().all(is_known) { mended } else { text.to_owned() })
+}
+
+/// The text with its broken lines blanked out; headers of tables stay, for without them their keys would go to another table.
+fn mended(text: &str, collector: &Collector) -> String {
+    let mut bytes = text.as_bytes().to_vec();
+    for line in collector.broken_lines() {
+        if !text[line.clone()].trim_start().starts_with('[') {
+            bytes[line.clone()].fill(b' ');
+        }
+    }
+    String::from_utf8(bytes).unwrap_or_else(|_| text.to_owned())
 }
 
 fn floor(text: &str, byte: usize) -> usize {

@@ -15,6 +15,9 @@ use std::ops::Range;
 use toml::Spanned;
 use toml::de::{DeTable, DeValue};
 
+/// Largest number of unknown keys that are reported in one table.
+const MOST_UNKNOWN: usize = 200;
+
 /// A key path with its pattern: `rocks.sandstone.k0` and `rocks.*.k0`.
 #[derive(Debug, Clone, Default)]
 pub(super) struct At {
@@ -84,7 +87,7 @@ impl Walk<'_> {
         let read = self.value(&field.kind, at, value);
         let is_word = matches!(value.get_ref(), DeValue::String(_));
         if let Some(entry) = not_yet::find(&at.pattern, is_word) {
-            let message = format!("{} is not available yet: {} is not built into this version", field.key, entry.what);
+            let message = format!("{} is not available yet: this version cannot handle {}", field.key, entry.what);
             self.error(Diagnostic::error("key.not-available", &at.path, message).hint("leave this key out for now"), value);
         }
         read
@@ -181,11 +184,9 @@ impl Walk<'_> {
     }
 
     fn unknown_keys(&mut self, shape: &'static Shape, table: &DeTable<'_>, at: &At) {
-        for (key, _) in table {
+        let unknown = table.keys().filter(|key| shape.field(key.get_ref()).is_none());
+        for key in unknown.take(MOST_UNKNOWN) {
             let name = key.get_ref();
-            if shape.field(name).is_some() {
-                continue;
-            }
             let shown = clip(name, 60);
             let at = at.key(&shown);
             let diagnostic = Diagnostic::error("key.unknown", &at.path, format!("there is no key {shown:?} here"));
@@ -245,8 +246,7 @@ impl Walk<'_> {
     pub(super) fn wrong_kind(&mut self, kind: &Kind, at: &At, value: &Spanned<DeValue<'_>>, hint: Option<String>) -> Val {
         let message = format!("this must be {}, but it is {}", describe(kind), found(value.get_ref()));
         let diagnostic = Diagnostic::error("value.kind", &at.path, message);
-        let diagnostic = if let Some(hint) = hint { diagnostic.hint(hint) } else { diagnostic };
-        self.error(diagnostic, value);
+        self.error(diagnostic.hint(hint.unwrap_or_else(|| example(kind))), value);
         Val::Bad
     }
 }
@@ -326,6 +326,24 @@ pub(super) fn describe(kind: &Kind) -> String {
         Kind::Tables(_) => "a list of tables".into(),
         Kind::Named(_) => "tables by name".into(),
         Kind::Either(kinds) => kinds.iter().map(describe).collect::<Vec<_>>().join(", or "),
+    }
+}
+
+/// How a value of a kind is written.
+fn example(kind: &Kind) -> String {
+    match kind {
+        Kind::Number(_) => "write a plain number, for example 24.5".into(),
+        Kind::Uncertain(..) => "write a plain number, or { mean = 24.5, cov = 0.05 }".into(),
+        Kind::Integer(..) => "write a number without a decimal point".into(),
+        Kind::Text | Kind::File => "write \"…\"".into(),
+        Kind::Choice(_) => "write one of them, in quotes".into(),
+        Kind::Flag => "write true or false, without quotes".into(),
+        Kind::Date => "write 2026-03-14".into(),
+        Kind::Point | Kind::Direction | Kind::Range | Kind::Pair => "write two numbers: [4.1, 31.2]".into(),
+        Kind::Points(_) => "write [[-40.0, 31.0], [20.0, 31.2]]".into(),
+        Kind::Texts => "write [\"…\", \"…\"]".into(),
+        Kind::Table(_) | Kind::Tables(_) | Kind::Named(_) => "its keys are listed in docs/model-file.md".into(),
+        Kind::Either(kinds) => kinds.iter().map(example).collect::<Vec<_>>().join("; or "),
     }
 }
 

@@ -1,5 +1,6 @@
 //! What acts and how the hollow grows: situations, surcharges, undercut, outlook.
 use super::super::{DeepeningRate, Groundwater, Model, SeaLevel, Situation};
+use super::surface::LEAST_HEIGHT_M;
 use super::{x_range_m, z_range_m};
 use crate::diagnostic::{Diagnostic, nth};
 
@@ -68,7 +69,7 @@ fn undercut(model: &Model, findings: &mut Vec<Diagnostic>) {
                 .hint("make the step larger; it is refined by itself where needed"),
         );
     }
-    let height = z_range_m(model).map(|[low, high]| (low, high, high - low));
+    let height = z_range_m(model).map(|[low, high]| (low, high, high - low)).filter(|(_, _, height_m)| *height_m >= LEAST_HEIGHT_M);
     if let (Some((z_low, z_high, height_m)), Some([x_low, x_high])) = (height, x_range_m(model)) {
         // The front of the cliff: the first point of the surface above half its height.
         let front = model.section.surface.iter().find(|point| point.z_m > z_low + 0.5 * height_m).map_or(x_high, |point| point.x_m);

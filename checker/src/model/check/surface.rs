@@ -7,7 +7,7 @@ use crate::diagnostic::{Diagnostic, nth};
 const SAME_POINT_M: f64 = 1e-6;
 
 /// Smallest height of a cliff, m.
-const LEAST_HEIGHT_M: f64 = 0.5;
+pub(super) const LEAST_HEIGHT_M: f64 = 0.5;
 
 /// Crossings after which the search stops.
 const MOST_CROSSINGS: usize = 10;
@@ -64,8 +64,7 @@ fn height(model: &Model, findings: &mut Vec<Diagnostic>) -> bool {
 
 fn doubled(surface: &[SurfacePoint], findings: &mut Vec<Diagnostic>) {
     for (i, pair) in surface.windows(2).enumerate() {
-        let distance_m = (pair[1].x_m - pair[0].x_m).hypot(pair[1].z_m - pair[0].z_m);
-        if distance_m < SAME_POINT_M {
+        if distance_m(&pair[0], &pair[1]) < SAME_POINT_M {
             let message = format!("points {} and {} of the surface are the same, [{}, {}]", i + 1, i + 2, pair[1].x_m, pair[1].z_m);
             let diagnostic = Diagnostic::error("surface.doubled", nth("section.surface", i + 1), message).hint("delete one of them");
             findings.push(diagnostic.also(nth("section.surface", i)));
@@ -73,9 +72,17 @@ fn doubled(surface: &[SurfacePoint], findings: &mut Vec<Diagnostic>) {
     }
 }
 
+fn distance_m(a: &SurfacePoint, b: &SurfacePoint) -> f64 {
+    (b.x_m - a.x_m).hypot(b.z_m - a.z_m)
+}
+
 /// Segments that meet other than at their common end. Sweep along x over segments sorted by their smallest x.
 fn crossings(surface: &[SurfacePoint], findings: &mut Vec<Diagnostic>) {
-    let segments: Vec<[[f64; 2]; 2]> = surface.windows(2).map(|pair| [[pair[0].x_m, pair[0].z_m], [pair[1].x_m, pair[1].z_m]]).collect();
+    // Doubled points were reported; here they count once. `first[i]` is the index of the point where segment i starts.
+    let is_new = |&i: &usize| i == 0 || distance_m(&surface[i - 1], &surface[i]) >= SAME_POINT_M;
+    let first: Vec<usize> = (0..surface.len()).filter(is_new).collect();
+    let at = |i: usize| [surface[i].x_m, surface[i].z_m];
+    let segments: Vec<[[f64; 2]; 2]> = first.windows(2).map(|pair| [at(pair[0]), at(pair[1])]).collect();
     let low = |i: usize| segments[i][0][0].min(segments[i][1][0]);
     let high = |i: usize| segments[i][0][0].max(segments[i][1][0]);
     let mut order: Vec<usize> = (0..segments.len()).collect();
@@ -97,6 +104,7 @@ fn crossings(surface: &[SurfacePoint], findings: &mut Vec<Diagnostic>) {
     }
     found.sort_unstable();
     for [a, b] in found.into_iter().take(MOST_CROSSINGS) {
+        let [a, b] = [first[a], first[b]];
         let message =
             format!("the surface crosses or touches itself: from point {} to {}, and from point {} to {}", a + 1, a + 2, b + 1, b + 2);
         let hint = "the surface is one line from the sea to the land without loops; check the order and the coordinates of these points";
@@ -111,9 +119,6 @@ fn meets(segments: &[[[f64; 2]; 2]], a: usize, b: usize) -> bool {
     let ([p, q], [r, s]) = (segments[a], segments[b]);
     let length_a = (q[0] - p[0]).hypot(q[1] - p[1]);
     let length_b = (s[0] - r[0]).hypot(s[1] - r[1]);
-    if length_a < SAME_POINT_M || length_b < SAME_POINT_M {
-        return false;
-    }
     if b == a + 1 {
         let turn = cross(p, q, s);
         let dot = (q[0] - p[0]) * (s[0] - r[0]) + (q[1] - p[1]) * (s[1] - r[1]);
