@@ -16,6 +16,8 @@ pub mod tensor;
 pub mod assembly;
 mod direct;
 pub mod floating;
+pub mod ordering;
+pub mod solve;
 pub mod supports;
 pub mod system;
 
