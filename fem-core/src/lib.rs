@@ -14,7 +14,6 @@ pub mod quadrature;
 pub mod tensor;
 
 pub mod assembly;
-mod direct;
 pub mod floating;
 pub mod ordering;
 pub mod solve;

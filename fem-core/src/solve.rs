@@ -103,6 +103,19 @@ pub enum SolveError {
     },
 }
 
+impl SolveError {
+    /// The free unknown that the error is about, if it is about one.
+    pub fn unknown(&self) -> Option<usize> {
+        match *self {
+            Self::NotPositiveDefinite { unknown }
+            | Self::NotHeld { unknown, .. }
+            | Self::MatrixNotFinite { unknown }
+            | Self::LoadNotFinite { unknown, .. } => Some(unknown),
+            Self::Inaccurate { .. } | Self::TooLarge { .. } => None,
+        }
+    }
+}
+
 /// Structure and values of the factor in one go; see [`Symbolic::new`] and [`Factorization::new`] for reuse.
 ///
 /// | name | shape | meaning |

@@ -1,9 +1,10 @@
 //! From a problem to displacements: check, assemble, factor once, solve any number of load cases.
 use crate::assembly::{self, DofMap, PRESCRIBED, SymmetricCsc};
-use crate::direct::{DirectError, Factor};
 use crate::elasticity::Elastic;
 use crate::floating::{FloatingPart, floating_parts};
 use crate::mesh::Mesh;
+use crate::ordering::elimination_order;
+use crate::solve::{Buffers, Factorization, SolveError, SolveParams, Symbolic};
 use crate::supports::Supports;
 
 /// Mesh, material per region number and supports.
@@ -35,9 +36,14 @@ pub enum SystemError {
     /// Parts of the body are free to move.
     #[error("{} part(s) of the body are free to move, the first near ({:.3}, {:.3}) m with {:.4} m2", .0.len(), .0[0].place_m[0], .0[0].place_m[1], .0[0].area_m2)]
     Floating(Vec<FloatingPart>),
-    /// The factorization failed.
-    #[error(transparent)]
-    Direct(#[from] DirectError),
+    /// The factorization or the solve failed.
+    #[error("{cause}{}", place_m.map_or_else(String::new, |[x, y]| format!(", near ({x:.3}, {y:.3}) m")))]
+    Solve {
+        /// What failed; unknowns are free numbers.
+        cause: SolveError,
+        /// Node of the unknown, where the failure has one.
+        place_m: Option<[f64; 2]>,
+    },
     /// A load or a solution is not finite.
     #[error("load case {case} has a value that is not finite")]
     NotFinite {
@@ -69,8 +75,7 @@ pub struct Solution {
 #[derive(Debug)]
 pub struct System {
     dofs: DofMap,
-    matrix: SymmetricCsc,
-    factor: Factor,
+    factorization: Factorization,
     /// Displacements with the prescribed values and zero elsewhere, m, and the node forces they take, N/m; `None` when all are zero.
     moved: Option<(Vec<f64>, Vec<f64>)>,
     info: SystemInfo,
@@ -82,6 +87,14 @@ impl Problem<'_> {
     /// # Errors
     /// [`SystemError`]: a region without material, floating parts, a failed factorization.
     pub fn factor(self) -> Result<System, SystemError> {
+        self.factor_in(Buffers::default())
+    }
+
+    /// Like [`Problem::factor`], in the memory of an earlier system of a series, see [`System::into_buffers`].
+    ///
+    /// # Errors
+    /// As [`Problem::factor`].
+    pub fn factor_in(self, buffers: Buffers) -> Result<System, SystemError> {
         let n_materials = self.materials.len();
         if let Some(&region) = self.mesh.regions.iter().find(|&&r| n_materials <= r as usize) {
             return Err(SystemError::NoMaterial { region, n_materials });
@@ -96,14 +109,22 @@ impl Problem<'_> {
         }
         let matrix = assembly::stiffness(self.mesh, self.materials, self.supports, &pattern);
         let dofs = pattern.dofs;
-        let factor = Factor::new(&matrix)?;
+        let info = SystemInfo { n_unknowns: matrix.n, n_entries: matrix.rows.len() };
+        let factorization = Symbolic::new(&matrix, &elimination_order(self.mesh, &dofs))
+            .and_then(|symbolic| Factorization::new(matrix, symbolic.into(), &SolveParams::default(), buffers))
+            .map_err(|cause| SystemError::Solve { cause, place_m: cause.unknown().and_then(|unknown| self.place_m(&dofs, unknown)) })?;
         let moved = self.supports.moves().then(|| {
             let u: Vec<f64> = self.supports.prescribed_m().iter().map(|p| p.unwrap_or(0.0)).collect();
             let forces = self.forces_n_per_m(&u);
             (u, forces)
         });
-        let info = SystemInfo { n_unknowns: matrix.n, n_entries: matrix.rows.len() };
-        Ok(System { dofs, matrix, factor, moved, info })
+        Ok(System { dofs, factorization, moved, info })
+    }
+
+    /// Node of a free unknown.
+    fn place_m(&self, dofs: &DofMap, unknown: usize) -> Option<[f64; 2]> {
+        let dof = dofs.free_of_dof.iter().position(|&free| free as usize == unknown)?;
+        Some(self.mesh.points_m[dof / 2])
     }
 
     /// Forces in N/m that hold the nodes at the displacements, springs included, shape `[2 * n_nodes]`.
@@ -128,15 +149,20 @@ impl System {
         &self.info
     }
 
+    /// Gives the memory of the factor back for the next system of a series.
+    pub fn into_buffers(self) -> Buffers {
+        self.factorization.into_buffers()
+    }
+
     /// Solves `K u = f` for load vectors in N/m of length `2 * n_nodes`, all at once; each case gets the same prescribed displacements.
     ///
     /// # Errors
-    /// [`SystemError::NotFinite`] when a load is not finite.
+    /// [`SystemError::NotFinite`] when a load is not finite, [`SystemError::Solve`] when a solution does not satisfy the equations.
     ///
     /// # Panics
     /// When a load vector has another length.
     pub fn solve<F: AsRef<[f64]>>(&self, loads_n_per_m: &[F]) -> Result<Vec<Solution>, SystemError> {
-        let n = self.matrix.n;
+        let n = self.factorization.matrix().n;
         let mut right = vec![0.0; n * loads_n_per_m.len()];
         for (case, loads) in loads_n_per_m.iter().enumerate() {
             let loads = loads.as_ref();
@@ -149,7 +175,7 @@ impl System {
             }
         }
         let mut solved = right.clone();
-        self.factor.solve_in_place(&mut solved);
+        self.factorization.solve(&mut solved, loads_n_per_m.len()).map_err(|cause| SystemError::Solve { cause, place_m: None })?;
         let cases = solved.chunks_exact(n).zip(right.chunks_exact(n)).enumerate();
         cases.map(|(case, (x, f))| self.solution(case, x, f)).collect()
     }
@@ -162,7 +188,7 @@ impl System {
         for (dof, &free) in self.dofs.free_of_dof.iter().enumerate().filter(|(_, f)| **f != PRESCRIBED) {
             displacements_m[dof] = x[free as usize];
         }
-        Ok(Solution { displacements_m, residual: backward_error(&self.matrix, x, f) })
+        Ok(Solution { displacements_m, residual: backward_error(self.factorization.matrix(), x, f) })
     }
 }
 
