@@ -8,13 +8,19 @@
 //! A pure function of its input: every sample has a random stream of its own, sums run in index order, so that the same seed
 //! gives the same bits for any number of threads. Equations (7.x) stand in `docs/theory.md`.
 pub mod critical;
+pub mod cycle;
 pub mod demand_model;
+pub mod evidence;
 pub mod form;
 pub mod growth;
+pub mod modes;
 pub mod normal;
 pub mod random;
 pub mod rates;
 pub mod reliability;
 pub mod sampling;
+pub mod setback;
+pub mod triggers;
 pub mod variables;
+pub mod words;
 pub mod years;

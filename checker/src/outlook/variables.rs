@@ -195,6 +195,24 @@ impl Variables {
         u
     }
 
+    /// Names of the random inputs with `alpha L^-1`: a direction of the independent normals turned into one of the inputs' own.
+    ///
+    /// # Panics
+    /// If `alpha` has the wrong length.
+    pub fn undo_correlation(&self, alpha: &[f64]) -> Vec<(String, f64)> {
+        assert_eq!(alpha.len(), self.random.len(), "direction");
+        let mut rest = alpha.to_vec();
+        // Back substitution from the last row: gamma L = alpha.
+        for (i, (first, row)) in self.factor.iter().enumerate().rev() {
+            let own = rest[i] / row[row.len() - 1];
+            rest[i] = own;
+            for (entry, below) in row[..row.len() - 1].iter().zip(&mut rest[*first..i]) {
+                *below -= entry * own;
+            }
+        }
+        self.random.iter().zip(rest).map(|(&i, share)| (self.names[i].clone(), share)).collect()
+    }
+
     /// The inputs at their medians.
     pub fn medians(&self) -> Vec<f64> {
         let mut x = vec![0.0; self.n_inputs()];

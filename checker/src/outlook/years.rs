@@ -26,7 +26,7 @@ impl Timeline {
     /// # Errors
     /// That of [`Growth::by`].
     pub fn new(growth: &Growth, horizon_yr: f64) -> Result<Self, GrowthError> {
-        let mut times_yr: Vec<f64> = (0..).map(f64::from).take_while(|t| *t < horizon_yr).collect();
+        let mut times_yr: Vec<f64> = (0..horizon_yr.ceil() as u32).map(f64::from).collect();
         let mut time = horizon_yr;
         while time <= 20.0 * horizon_yr {
             times_yr.push(time);
@@ -104,6 +104,19 @@ impl Cliff<'_> {
         let estimates = self.estimates(n_times, |i, out| self.collapse_chances(i, timeline, out));
         let rows = timeline.times_yr.iter().zip(estimates);
         rows.map(|(&time_yr, (unconditioned, standing))| ChanceBy { time_yr, unconditioned, standing }).collect()
+    }
+
+    /// Chance of collapse of every sample by one time of the timeline.
+    pub fn collapse_chance_by(&self, timeline: &Timeline, i_time: usize) -> Vec<f64> {
+        if self.depths.annual_chances.is_empty() {
+            return self.depths.depth_m.par_iter().map(|d| timeline.growth[i_time].exceedance(d - self.today_m)).collect();
+        }
+        let of = |i: usize| {
+            let mut out = vec![0.0; i_time + 1];
+            self.collapse_chances(i, timeline, &mut out);
+            out[i_time]
+        };
+        (0..self.n()).into_par_iter().map(of).collect()
     }
 
     /// Estimates of several chances of every sample at once: over all samples, and over those that stand today.
