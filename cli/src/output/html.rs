@@ -148,7 +148,7 @@ fn pictures(report: &Report<'_>) -> Value {
     };
     let charts: Vec<String> =
         chart::check_names(report.outcome).into_iter().filter_map(|name| chart::demand(report.outcome, name)).map(|p| p.inline()).collect();
-    let mesh = figures.surveyed.map(|surveyed| mesh::picture(surveyed, report.outcome, "mesh").inline());
+    let mesh = figures.surveyed.map(|surveyed| mesh::near(surveyed, report.outcome, "mesh").inline());
     context! {
         section => figures.section().map(|picture| picture.inline()),
         stress_surveyed => field(Quantity::MajorStress, figures.surveyed, "stress-surveyed"),
@@ -159,6 +159,7 @@ fn pictures(report: &Report<'_>) -> Value {
         index_critical => index(figures.critical),
         critical_m => figures.critical.map(|critical| words::meters(critical.depth_m)),
         charts,
+        chart_key => chart::demand_key().inline(),
         hangs_on => chart::hangs_on(report.outcome).map(|picture| picture.inline()),
         mesh => mesh.filter(|picture| picture.len() < LARGEST_MESH_BYTES),
     }

@@ -196,7 +196,7 @@ fn hangs_on(out: &mut String, outcome: &Outcome) {
     line(out, "What the answer hangs on (one at a time)");
     let mut table = Table::new(&["quantity", "low", "high", "utilization today", "critical depth (m)"]);
     for row in &outcome.hangs_on {
-        let number = |value: f64| format!("{} {}", words::figures(value), row.unit).trim_end().to_owned();
+        let number = |value: f64| format!("{} {}", words::plain(value), row.unit).trim_end().to_owned();
         let pair = |values: [Option<f64>; 2], none: &str| {
             let text = values.map(|value| value.map_or_else(|| none.to_owned(), |value| words::fixed(value, 2)));
             format!("{} to {}", text[0], text[1])

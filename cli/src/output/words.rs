@@ -27,6 +27,12 @@ pub fn figures(value: f64) -> String {
     if text.trim_start_matches(['-', '0', '.']).is_empty() { text.trim_start_matches('-').to_owned() } else { text }
 }
 
+/// [`figures`] without zeros at the end of its decimals, for values as a person typed them.
+pub fn plain(value: f64) -> String {
+    let text = figures(value);
+    if text.contains('.') && !text.contains('e') { text.trim_end_matches('0').trim_end_matches('.').to_owned() } else { text }
+}
+
 /// A length in m with two decimals and its unit.
 pub fn meters(value_m: f64) -> String {
     format!("{} m", fixed(value_m, 2))
@@ -112,7 +118,7 @@ pub fn forbidden(text: &str) -> Vec<String> {
 
 #[cfg(test)]
 mod tests {
-    use super::{figures, fixed, forbidden};
+    use super::{figures, fixed, forbidden, plain};
 
     #[test]
     fn numbers_read_as_a_person_writes_them() {
@@ -120,6 +126,7 @@ mod tests {
         for (value, text) in cases {
             assert_eq!(figures(value), text);
         }
+        assert_eq!([plain(0.3), plain(2.0), plain(100.0), plain(0.0)], ["0.3", "2", "100", "0"]);
         assert_eq!(fixed(-0.001, 2), "0.00");
         assert_eq!(fixed(-1.005, 1), "-1.0");
     }

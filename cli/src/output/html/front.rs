@@ -73,7 +73,7 @@ fn widest(outcome: &Outcome) -> Option<&HangsOn> {
 fn swing(row: &HangsOn) -> String {
     let unit = if row.unit.is_empty() { String::new() } else { format!(" {}", row.unit) };
     let depth = |depth: Option<f64>| depth.map_or_else(|| "not reached".to_owned(), |depth_m| format!("{depth_m:.1} m"));
-    let range = format!("{}: from {} to {}{unit}", row.what, words::figures(row.low), words::figures(row.high));
+    let range = format!("{}: from {} to {}{unit}", row.what, words::plain(row.low), words::plain(row.high));
     if row.critical_depth_m.iter().any(Option::is_some) {
         format!("{range} the critical depth goes from {} to {}.", depth(row.critical_depth_m[0]), depth(row.critical_depth_m[1]))
     } else {

@@ -5,14 +5,14 @@ use checker::model::{
 };
 
 use super::table::{Cell, Table};
-use crate::output::words::{figures, fixed};
+use crate::output::words::{fixed, plain};
 
 /// An uncertain number in the file's unit; `scale` turns SI into it.
 fn given(value: &Uncertain, scale: f64, unit: &str) -> String {
-    let show = |value: f64| figures(value * scale);
+    let show = |value: f64| plain(value * scale);
     let text = match *value {
         Uncertain::Exact(value) => show(value),
-        Uncertain::Lognormal { mean, cov } => format!("mean {}, cov {} (lognormal)", show(mean), figures(cov)),
+        Uncertain::Lognormal { mean, cov } => format!("mean {}, cov {} (lognormal)", show(mean), plain(cov)),
         Uncertain::Normal { mean, standard_deviation } => {
             format!("mean {}, standard deviation {} (normal)", show(mean), show(standard_deviation))
         }
@@ -32,7 +32,7 @@ fn given(value: &Uncertain, scale: f64, unit: &str) -> String {
 
 /// SI value in short.
 fn si(value: f64, unit: &str) -> Cell {
-    let text = if value.abs() < 1e4 { figures(value) } else { format!("{value:.3e}") };
+    let text = if value.abs() < 1e4 { plain(value) } else { format!("{value:.3e}") };
     Cell::number(value, format!("{text} {unit}").trim_end().to_owned())
 }
 
@@ -54,8 +54,8 @@ fn rock_rows(table: &mut Table, rock: &Rock) {
     row("unit weight", given(weight, 1e-3, "kN/m³"), si(weight.mean(), "N/m³"), "moist, above water");
     let saturated = &rock.saturated_unit_weight_n_per_m3;
     row("saturated unit weight", given(saturated, 1e-3, "kN/m³"), si(saturated.mean(), "N/m³"), "below water");
-    row("Young's modulus", format!("{} MPa", figures(rock.youngs_modulus_pa * 1e-6)), si(rock.youngs_modulus_pa, "Pa"), "of the rock mass");
-    row("Poisson's ratio", figures(rock.poissons_ratio), si(rock.poissons_ratio, ""), "");
+    row("Young's modulus", format!("{} MPa", plain(rock.youngs_modulus_pa * 1e-6)), si(rock.youngs_modulus_pa, "Pa"), "of the rock mass");
+    row("Poisson's ratio", plain(rock.poissons_ratio), si(rock.poissons_ratio, ""), "");
     match &rock.k0 {
         Some(k0) => row("k0", given(k0, 1.0, ""), si(k0.mean(), ""), "horizontal / vertical effective stress in the ground"),
         None => row("k0", "not measured".into(), Cell::text("ν/(1−ν) and 1.0"), "both are computed; the worse is shown"),
@@ -65,8 +65,8 @@ fn rock_rows(table: &mut Table, rock: &Rock) {
         RockStrength::Typed(strength) => {
             let factor = rock.mass_factor;
             let wet = rock.wet_factor;
-            let tension = format!("{basis}; mass factor {}, wet factor {}", figures(factor.tension), figures(wet));
-            let cohesion = format!("{basis}; mass factor {}, wet factor {}", figures(factor.cohesion), figures(wet));
+            let tension = format!("{basis}; mass factor {}, wet factor {}", plain(factor.tension), plain(wet));
+            let cohesion = format!("{basis}; mass factor {}, wet factor {}", plain(factor.cohesion), plain(wet));
             let (st, c, phi) = (&strength.tensile_strength_pa, &strength.cohesion_pa, &strength.friction_angle_rad);
             row("tensile strength", given(st, 1e-3, "kPa"), si(st.mean() * factor.tension * wet, "Pa"), &tension);
             row("cohesion", given(c, 1e-3, "kPa"), si(c.mean() * factor.cohesion * wet, "Pa"), &cohesion);
@@ -78,7 +78,7 @@ fn rock_rows(table: &mut Table, rock: &Rock) {
                 "GSI {}, mi {}, D {}, uniaxial strength {}",
                 given(&rating.gsi, 1.0, ""),
                 given(&rating.mi, 1.0, ""),
-                figures(rating.disturbance),
+                plain(rating.disturbance),
                 given(&rating.uniaxial_strength_pa, 1e-6, "MPa")
             );
             row("strength", text, Cell::text("Hoek–Brown relations of 2002"), basis);
@@ -142,7 +142,7 @@ pub fn situations(model: &Model) -> Table {
             Cell::text(match &situation.above_table {
                 AboveTable::Dry => "dry".to_owned(),
                 AboveTable::Suction { saturation, suction_limit_pa, basis } => {
-                    format!("saturation {}, suction up to {} kPa ({basis})", figures(*saturation), figures(suction_limit_pa * 1e-3))
+                    format!("saturation {}, suction up to {} kPa ({basis})", plain(*saturation), plain(suction_limit_pa * 1e-3))
                 }
             }),
             Cell::text(loads(model, situation)),
@@ -169,13 +169,7 @@ fn loads(model: &Model, situation: &Situation) -> String {
         .iter()
         .filter_map(|i| model.surcharges.get(*i))
         .map(|load| {
-            format!(
-                "{}, {} kPa on x = {} to {} m",
-                load.name,
-                figures(load.pressure_pa * 1e-3),
-                fixed(load.x_m[0], 1),
-                fixed(load.x_m[1], 1)
-            )
+            format!("{}, {} kPa on x = {} to {} m", load.name, plain(load.pressure_pa * 1e-3), fixed(load.x_m[0], 1), fixed(load.x_m[1], 1))
         })
         .collect();
     if names.is_empty() { "none".to_owned() } else { names.join("; ") }
@@ -186,7 +180,7 @@ fn motion(situation: &Situation) -> String {
         return "none".to_owned();
     }
     let chance = situation.annual_chance.map_or_else(String::new, |chance| format!(", chance {chance} a year"));
-    format!("{} toward the sea, {} upward{chance}", figures(situation.inertia_seaward), figures(situation.inertia_up))
+    format!("{} toward the sea, {} upward{chance}", plain(situation.inertia_seaward), plain(situation.inertia_up))
 }
 
 /// Growth of the undercut and how demands are taken.
@@ -199,9 +193,9 @@ pub fn settings(model: &Model) -> Table {
         Growth::Stretch => "stretch: the hollow is scaled",
     };
     row("growth of the undercut", growth.to_owned());
-    row("searched down to", format!("{} m, in steps of {} m", figures(undercut.search_to_depth_m), figures(undercut.depth_step_m)));
+    row("searched down to", format!("{} m, in steps of {} m", plain(undercut.search_to_depth_m), plain(undercut.depth_step_m)));
     if let Some(width_m) = undercut.width_along_shore_m {
-        row("width along the shore", format!("{} m", figures(width_m)));
+        row("width along the shore", format!("{} m", plain(width_m)));
     }
     let checks = &model.checks;
     let headline = match checks.headline {
@@ -210,7 +204,7 @@ pub fn settings(model: &Model) -> Table {
     };
     row("headline inputs", headline.to_owned());
     let averaging = match checks.averaging {
-        Averaging::Given(length_m) => format!("{} m, given", figures(length_m)),
+        Averaging::Given(length_m) => format!("{} m, given", plain(length_m)),
         Averaging::FromThickness => "0.1 × overhang thickness, at most 1.0 m".to_owned(),
     };
     row("averaging length", averaging);
@@ -221,13 +215,13 @@ pub fn settings(model: &Model) -> Table {
         "partial factors",
         format!(
             "tension {}, cohesion {}, friction {}, unit weight {}{set}",
-            figures(f.tension),
-            figures(f.cohesion),
-            figures(f.friction),
-            figures(f.unit_weight)
+            plain(f.tension),
+            plain(f.cohesion),
+            plain(f.friction),
+            plain(f.unit_weight)
         ),
     );
-    row("limit of utilization", format!("1 / {} (required reserve)", figures(checks.required_reserve)));
+    row("limit of utilization", format!("1 / {} (required reserve)", plain(checks.required_reserve)));
     row("target of the numerical error", fixed(checks.target_error, 3));
     table
 }
@@ -240,7 +234,7 @@ pub fn joints(model: &Model) -> Table {
         table.row(vec![
             Cell::text(&set.name),
             Cell::text(format!("{}°", fixed(set.dip_seaward_rad.to_degrees(), 1))),
-            Cell::text(figures(set.persistence)),
+            Cell::text(plain(set.persistence)),
             Cell::text(given(&set.cohesion_pa, 1e-3, "kPa")),
             Cell::text(given(&set.friction_angle_rad, 1.0_f64.to_degrees(), "°")),
             Cell::text(given(&set.tensile_strength_pa, 1e-3, "kPa")),

@@ -4,8 +4,14 @@
   for (const table of document.querySelectorAll("table.sortable")) {
     const heads = [...table.querySelectorAll("thead th")];
     heads.forEach((head, column) => {
-      const button = document.createElement("button");
-      button.type = "button";
+      const button = document.createElement("span");
+      button.tabIndex = 0;
+      button.setAttribute("role", "button");
+      button.addEventListener("keydown", (event) => {
+        if (event.key !== "Enter" && event.key !== " ") return;
+        event.preventDefault();
+        button.click();
+      });
       button.append(...head.childNodes);
       head.append(button);
       button.addEventListener("click", () => {

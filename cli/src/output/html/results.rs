@@ -4,19 +4,20 @@ use checker::outcome::{CheckResult, Outcome};
 use super::table::{Cell, Table};
 use crate::output::words::{self, figures, fixed};
 
-const CHECK_HEAD: [&str; 12] = [
+const CHECK_HEAD: [&str; 13] = [
     "check",
     "situation",
-    "inputs",
-    "demand (kPa)",
+    "cautious: demand (kPa)",
     "capacity (kPa)",
-    "utilization",
-    "± numerical error",
+    "utilization ± error",
+    "limit",
+    "best estimate: demand (kPa)",
+    "capacity (kPa)",
+    "utilization ± error",
     "at depth 0 (kPa)",
     "closed form (kPa)",
-    "limit",
-    "at x, z (m)",
-    "rock",
+    "x, z (m), rock",
+    "remarks",
 ];
 
 /// Checks as surveyed.
@@ -39,42 +40,70 @@ pub fn critical(outcome: &Outcome) -> Table {
     checks("checks-critical", caption, &nearest.checks)
 }
 
+/// One row a check and situation: cautious inputs and best estimate side by side.
 fn checks(id: &'static str, caption: String, rows: &[CheckResult]) -> Table {
     let mut table = Table::new(id, caption, &CHECK_HEAD);
+    let mut keys: Vec<(&str, &str)> = Vec::new();
     for check in rows {
-        table.rows.push((check.over, check_row(check)));
+        let key = (check.check, check.situation.as_str());
+        if !keys.contains(&key) {
+            keys.push(key);
+        }
+    }
+    for (name, situation) in keys {
+        let of =
+            |inputs: &str| rows.iter().find(|check| (check.check, check.situation.as_str(), check.inputs) == (name, situation, inputs));
+        let (cautious, best) = (of("cautious"), of("best estimate"));
+        if let Some(shown) = cautious.or(best) {
+            let mut cells = vec![Cell::text(name), Cell::text(situation)];
+            cells.extend(values(cautious));
+            cells.push(Cell::text(cautious.map_or("–", verdict)));
+            cells.extend(values(best));
+            cells.extend([
+                Cell::optional(shown.background_kpa, figures, "–"),
+                Cell::optional(shown.closed_form_demand_kpa, figures, "–"),
+                Cell::text(format!("{}, {}", words::place(shown.at), shown.rock)),
+                Cell::text(remarks(shown)),
+            ]);
+            table.rows.push((shown.over, cells));
+        }
     }
     table
 }
 
-fn check_row(check: &CheckResult) -> Vec<Cell> {
-    let mut name = check.check.to_owned();
-    if let Some(case) = &check.k0_case {
-        name = format!("{name} [{case}]");
-    }
-    if check.short_segment {
-        name.push_str(" [segment cut below half its length]");
-    }
-    if let Some(area) = check.zone_m2.filter(|area| 0.0 < *area) {
-        name = format!("{name} [{} m\u{b2} over the limit]", figures(area));
-    }
-    let resultant = |value: Option<f64>| value.map_or_else(String::new, |value| format!(" ({} kN/m)", figures(value)));
+/// Demand, capacity and utilization of one kind of inputs.
+fn values(check: Option<&CheckResult>) -> [Cell; 3] {
+    let Some(check) = check else { return std::array::from_fn(|_| Cell::text("–")) };
     let unit = if check.check == "joint opening" { " m" } else { "" };
     let utilization = words::utilization(check);
-    vec![
-        Cell::text(name),
-        Cell::text(&check.situation),
-        Cell::text(check.inputs),
-        Cell::number(check.demand_kpa, signed(check) + unit + &resultant(check.demand_kn_per_m)),
-        Cell::number(check.capacity_kpa, figures(check.capacity_kpa) + unit + &resultant(check.capacity_kn_per_m)),
-        check.utilization.map_or_else(|| Cell::text(utilization.clone()), |value| Cell::number(value, utilization.clone())),
-        Cell::number(check.error, fixed(check.error, 3)),
-        Cell::optional(check.background_kpa, figures, "–"),
-        Cell::optional(check.closed_form_demand_kpa, figures, "–"),
-        Cell::text(words::verdict(check)),
-        Cell::text(words::place(check.at)),
-        Cell::text(&check.rock),
+    [
+        Cell::number(check.demand_kpa, signed(check) + unit),
+        Cell::number(check.capacity_kpa, figures(check.capacity_kpa) + unit),
+        check
+            .utilization
+            .map_or_else(|| Cell::text(&utilization), |value| Cell::number(value, format!("{utilization} ± {}", fixed(check.error, 3)))),
     ]
+}
+
+fn verdict(check: &CheckResult) -> &'static str {
+    if check.over { "OVER" } else { "under" }
+}
+
+fn remarks(check: &CheckResult) -> String {
+    let mut remarks: Vec<String> = check.k0_case.iter().cloned().collect();
+    if let (Some(demand), Some(capacity)) = (check.demand_kn_per_m, check.capacity_kn_per_m) {
+        remarks.push(format!("{} of {} kN/m", figures(demand), figures(capacity)));
+    }
+    if let Some(length_m) = check.averaging_length_m {
+        remarks.push(format!("mean over {} m", words::plain(length_m)));
+    }
+    if check.short_segment {
+        remarks.push("segment cut below half its length".to_owned());
+    }
+    if let Some(area) = check.zone_m2.filter(|area| 0.0 < *area) {
+        remarks.push(format!("{} m\u{b2} over the limit", figures(area)));
+    }
+    remarks.join("; ")
 }
 
 /// A demand; compression is said in words.
@@ -115,7 +144,7 @@ pub fn hangs_on(outcome: &Outcome) -> Table {
     let head = ["quantity", "low", "high", "utilization at low", "at high", "critical depth at low (m)", "at high (m)"];
     let mut table = Table::new("hangs-on", "What the answer hangs on: one quantity at a time, the others as given", &head);
     for row in &outcome.hangs_on {
-        let unit = |value: f64| format!("{} {}", figures(value), row.unit).trim_end().to_owned();
+        let unit = |value: f64| format!("{} {}", words::plain(value), row.unit).trim_end().to_owned();
         let two = |value: f64| fixed(value, 2);
         table.row(vec![
             Cell::text(&row.what),

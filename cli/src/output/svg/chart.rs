@@ -47,6 +47,31 @@ impl Plot {
     }
 }
 
+/// Key to the lines of the demand charts.
+pub fn demand_key() -> Picture {
+    let rows = [
+        ("demand", "demand, cautious inputs"),
+        ("demandbest", "demand, best estimate"),
+        ("capacity", "capacity, cautious inputs"),
+        ("capacitybest", "capacity, best estimate"),
+        ("background", "same place at depth 0"),
+        ("closed", "closed form of a cantilever"),
+    ];
+    let mut svg = Svg::default();
+    for (i, (class, text)) in rows.iter().enumerate() {
+        let (x, y) = (8.0 + 285.0 * (i % 3) as f64, 16.0 + 22.0 * (i / 3) as f64);
+        svg.line([[x, y], [x + 40.0, y]], class);
+        svg.text([x + 48.0, y + 4.0], Anchor::Start, "label", text);
+    }
+    Picture {
+        width: 860.0,
+        height: 52.0,
+        title: "Key to the lines of the charts".to_owned(),
+        description: "The shaded band is the numerical error of the demand.".to_owned(),
+        body: svg.body,
+    }
+}
+
 /// Checks that occur in the series, in their order of first appearance.
 pub fn check_names(outcome: &Outcome) -> Vec<&'static str> {
     let mut names = Vec::new();
@@ -183,8 +208,8 @@ pub fn hangs_on(outcome: &Outcome) -> Option<Picture> {
     let height = 34.0 * rows.len() as f64;
     let known = rows.iter().flat_map(|row| ends(row)).flatten().chain(base);
     let [low, high] = known.fold([f64::INFINITY, f64::NEG_INFINITY], |range, value| [range[0].min(value), range[1].max(value)]);
-    let margin = (0.15 * (high - low)).max(0.05 * high.abs()).max(1e-3);
-    let plot = Plot { x: [(low - margin).max(0.0), high + margin], y: [0.0, 1.0], left: 300.0, top: 20.0, width: 560.0, height };
+    let margin = (0.28 * (high - low)).max(0.05 * high.abs()).max(1e-3);
+    let plot = Plot { x: [(low - margin).max(0.0), high + margin], y: [0.0, 1.0], left: 300.0, top: 20.0, width: 490.0, height };
     bar_axes(&mut svg, &plot, if by_depth { "critical undercut depth (horizontal), m" } else { "governing utilization as surveyed" });
     for (i, row) in rows.iter().enumerate() {
         bar(&mut svg, &plot, row, ends(row), plot.top + 34.0 * i as f64);
@@ -223,7 +248,7 @@ fn bar(svg: &mut Svg, plot: &Plot, row: &HangsOn, ends: [Option<f64>; 2], top: f
     let name: String =
         if 44 < row.what.chars().count() { row.what.chars().take(43).chain(['\u{2026}']).collect() } else { row.what.clone() };
     svg.text([plot.left - 12.0, top + 14.0], Anchor::End, "label", &name);
-    let range = format!("{} to {}{unit}", words::figures(row.low), words::figures(row.high));
+    let range = format!("{} to {}{unit}", words::plain(row.low), words::plain(row.high));
     svg.text([plot.left - 12.0, top + 28.0], Anchor::End, "tick", &range);
     let right = plot.left + plot.width;
     let at = ends.map(|value| value.map_or(right, |value| plot.px([value, 0.0])[0]));
@@ -233,9 +258,9 @@ fn bar(svg: &mut Svg, plot: &Plot, row: &HangsOn, ends: [Option<f64>; 2], top: f
     }
     for (i, (x, end)) in at.iter().zip(ends).enumerate() {
         let word = ["low", "high"][i];
-        let text = end.map_or_else(|| format!("{word}: not reached \u{2192}"), |value| format!("{word} {}", words::fixed(value, 2)));
-        let outer_left = if (at[0] - at[1]).abs() < 1e-9 { i == 0 } else { *x <= middle };
-        let (dx, anchor) = if outer_left || right - 90.0 < *x { (-5.0, Anchor::End) } else { (5.0, Anchor::Start) };
+        let text = end.map_or_else(|| format!("{word}: not reached"), |value| format!("{word} {}", words::fixed(value, 2)));
+        let is_left = if (at[0] - at[1]).abs() < 1e-9 { i == 0 } else { *x <= middle };
+        let (dx, anchor) = if is_left { (-5.0, Anchor::End) } else { (5.0, Anchor::Start) };
         svg.text([x + dx, top + 20.0], anchor, "halo small", &text);
     }
 }

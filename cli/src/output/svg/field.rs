@@ -296,11 +296,10 @@ fn places(svg: &mut Svg, snapshot: &FieldSnapshot, frame: &Frame, marks: &Marks<
     for (i, (check, at)) in snapshot.places.iter().enumerate() {
         let number = (i + 1).to_string();
         let governs = marks.governing.is_some_and(|(name, _)| name == *check);
-        let value = marks.governing.filter(|_| governs).map_or_else(String::new, |(_, value)| format!(": {value}"));
-        svg.text([x, y], Anchor::Start, if governs { "label strong" } else { "label" }, &format!("{number}  {check}{value}"));
+        svg.text([x, y], Anchor::Start, if governs { "label strong" } else { "label" }, &format!("{number}  {check}"));
         y += 17.0;
-        if governs {
-            svg.text([x + 15.0, y - 2.0], Anchor::Start, "label small", "governs at this depth");
+        if let Some((_, value)) = marks.governing.filter(|_| governs) {
+            svg.text([x + 15.0, y - 2.0], Anchor::Start, "label small", &format!("governs: {value}"));
             y += 15.0;
         }
         if !frame.shows(*at) {
@@ -352,7 +351,7 @@ mod tests {
         assert_eq!(scale.colors.len(), scale.levels.len() + 1);
         let marks = Marks { id: "a", governing: Some(("cliff-top tension", "1.00")), rupture_line: None, crosses: true };
         let picture = picture(&snapshot, &scale, &frame, &marks);
-        for part in ["tension", "compression", "kPa", "class=\"zero\"", "level z (m)", "governs at this depth", "class=\"pull\""] {
+        for part in ["tension", "compression", "kPa", "class=\"zero\"", "level z (m)", "governs: 1.00", "class=\"pull\""] {
             assert!(picture.body.contains(part), "{part}");
         }
         assert!(picture.body.len() < 90_000, "{} bytes", picture.body.len());

@@ -28,6 +28,23 @@ pub fn picture(snapshot: &FieldSnapshot, outcome: &Outcome, id: &str) -> Picture
     }
 }
 
+/// The mesh at the undercut alone.
+pub fn near(snapshot: &FieldSnapshot, outcome: &Outcome, id: &str) -> Picture {
+    let mut frame = near_undercut(outcome, snapshot);
+    frame.left = 58.0;
+    frame.top = 12.0;
+    let mut svg = Svg::default();
+    window(&mut svg, snapshot, &frame, id);
+    frame.axes(&mut svg);
+    Picture {
+        width: 760.0,
+        height: frame.top + frame.height() + 48.0,
+        title: format!("Mesh at the undercut, depth (horizontal) {}", words::meters(snapshot.depth_m)),
+        description: "Six-node triangles, axes in metres.".to_owned(),
+        body: svg.body,
+    }
+}
+
 fn whole_model(outcome: &Outcome, snapshot: &FieldSnapshot) -> Frame {
     let extent = &outcome.numerics.extent;
     let top_m = snapshot.mesh.points_m.iter().fold(outcome.section.brow[1], |top, p| top.max(p[1]));
