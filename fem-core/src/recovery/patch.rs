@@ -9,8 +9,7 @@ const PIVOT_TOLERANCE: f64 = 1e-7;
 /// Fit of a patch: coefficients of the polynomial as weights on the samples.
 #[derive(Debug, Clone)]
 pub(super) struct Fit {
-    center_m: [f64; 2],
-    radius_m: f64,
+    frame: Frame,
     /// Weights of each sample on the coefficients, shape `[n_samples][6]`; zero beyond `n_terms`.
     inverse: Vec<[f64; N_TERMS]>,
 }
@@ -18,12 +17,11 @@ pub(super) struct Fit {
 impl Fit {
     /// Fits `n_terms` (6, 3 or 1) terms to the points; `None` when the points do not determine them.
     pub(super) fn new(center_m: [f64; 2], points_m: &[[f64; 2]], n_terms: usize) -> Option<Self> {
-        let distance = |p: &[f64; 2]| (p[0] - center_m[0]).hypot(p[1] - center_m[1]);
-        let radius_m = points_m.iter().map(distance).fold(0.0, f64::max);
         if points_m.len() < n_terms {
             return None;
         }
-        let rows: Vec<[f64; N_TERMS]> = points_m.iter().map(|&p| terms(center_m, radius_m, p)).collect();
+        let frame = Frame::new(center_m, points_m);
+        let rows: Vec<[f64; N_TERMS]> = points_m.iter().map(|&p| frame.terms(p)).collect();
         let mut normal = [[0.0; N_TERMS]; N_TERMS];
         for r in &rows {
             for i in 0..n_terms {
@@ -34,20 +32,46 @@ impl Fit {
         }
         let factor = cholesky(normal, n_terms)?;
         let inverse = rows.iter().map(|r| back_substitute(&factor, r, n_terms)).collect();
-        Some(Self { center_m, radius_m, inverse })
+        Some(Self { frame, inverse })
     }
 
     /// Weights of the samples on the polynomial's value at a point, times `share`, one after the other.
     pub(super) fn weights_at(&self, point_m: [f64; 2], share: f64) -> impl Iterator<Item = f64> + '_ {
-        let t = terms(self.center_m, self.radius_m, point_m).map(|v| share * v);
+        let t = self.frame.terms(point_m).map(|v| share * v);
         self.inverse.iter().map(move |c| t.iter().zip(c).map(|(t, c)| t * c).sum())
     }
 }
 
-/// Terms of the polynomial in coordinates scaled by the patch, so that the normal matrix is of order 1.
-fn terms(center_m: [f64; 2], radius_m: f64, point_m: [f64; 2]) -> [f64; N_TERMS] {
-    let (x, y) = ((point_m[0] - center_m[0]) / radius_m, (point_m[1] - center_m[1]) / radius_m);
-    [1.0, x, y, x * x, x * y, y * y]
+/// Coordinates in which the samples scatter by 1 in every direction, so that slender elements fit as well as stout ones.
+#[derive(Debug, Clone, Copy)]
+struct Frame {
+    center_m: [f64; 2],
+    /// Lower Cholesky factor of the mean square `[xx, xy, yy]` of the samples about the center, m.
+    scale_m: [f64; 3],
+}
+
+impl Frame {
+    fn new(center_m: [f64; 2], points_m: &[[f64; 2]]) -> Self {
+        let n = points_m.len() as f64;
+        let (mut xx, mut xy, mut yy) = (0.0, 0.0, 0.0);
+        for p in points_m {
+            let (x, y) = (p[0] - center_m[0], p[1] - center_m[1]);
+            (xx, xy, yy) = (xx + x * x / n, xy + x * y / n, yy + y * y / n);
+        }
+        // Points on a line through the center leave one direction without scale; a tiny one keeps the fit finite and its pivot zero.
+        let floor = 1e-12 * (xx + yy).max(f64::MIN_POSITIVE);
+        let a = xx.max(floor).sqrt();
+        let b = xy / a;
+        Self { center_m, scale_m: [a, b, (yy - b * b).max(floor).sqrt()] }
+    }
+
+    /// Terms of the polynomial.
+    fn terms(&self, point_m: [f64; 2]) -> [f64; N_TERMS] {
+        let [a, b, c] = self.scale_m;
+        let x = (point_m[0] - self.center_m[0]) / a;
+        let y = (point_m[1] - self.center_m[1] - b * x) / c;
+        [1.0, x, y, x * x, x * y, y * y]
+    }
 }
 
 /// Lower Cholesky factor of the leading block of size `n`, or `None` at a pivot below the tolerance.
