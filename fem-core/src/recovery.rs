@@ -35,10 +35,10 @@ pub struct RecoveredLayout {
 #[derive(Debug, Clone, PartialEq)]
 pub struct Recovery {
     layout: RecoveredLayout,
-    /// Weights on the samples (three per element) in compressed rows, one row per recovered node.
+    /// Weights on the three samples of elements in compressed rows, one row per recovered node.
     row_starts: Vec<u32>,
-    samples: Vec<u32>,
-    weights: Vec<f64>,
+    elements: Vec<u32>,
+    weights: Vec<[f64; 3]>,
 }
 
 impl RecoveredLayout {
@@ -91,9 +91,11 @@ impl Recovery {
         let row = |range: &[u32]| {
             let range = range[0] as usize..range[1] as usize;
             let mut sum = [0.0; 3];
-            for (&sample, &weight) in self.samples[range.clone()].iter().zip(&self.weights[range]) {
-                let value = &samples_pa[sample as usize];
-                sum = [sum[0] + weight * value[0], sum[1] + weight * value[1], sum[2] + weight * value[2]];
+            for (&element, weights) in self.elements[range.clone()].iter().zip(&self.weights[range]) {
+                let samples = &samples_pa[3 * element as usize..3 * element as usize + 3];
+                for (value, &weight) in samples.iter().zip(weights) {
+                    sum = [sum[0] + weight * value[0], sum[1] + weight * value[1], sum[2] + weight * value[2]];
+                }
             }
             sum
         };

@@ -1,5 +1,5 @@
 //! From a problem to displacements: check, assemble, factor once, solve any number of load cases.
-use crate::assembly::{self, DofMap, PRESCRIBED, SymmetricCsc};
+use crate::assembly::{self, DofMap, PRESCRIBED};
 use crate::elasticity::Elastic;
 use crate::floating::{FloatingPart, floating_parts};
 use crate::mesh::Mesh;
@@ -60,6 +60,10 @@ pub struct SystemInfo {
     pub n_unknowns: usize,
     /// Entries of the lower triangle of the stiffness matrix.
     pub n_entries: usize,
+    /// Entries of its factor.
+    pub n_factor_entries: usize,
+    /// Smallest over largest pivot of the factorization.
+    pub pivot_ratio: f64,
 }
 
 /// Displacements of one load case.
@@ -67,7 +71,7 @@ pub struct SystemInfo {
 pub struct Solution {
     /// Displacements in m, shape `[2 * n_nodes]`, prescribed ones included.
     pub displacements_m: Vec<f64>,
-    /// Largest unbalanced force over the largest node force of `|K| |u| + |f|`: the relative backward error, dimensionless.
+    /// Relative backward error `‖f − K u‖∞ / (‖K‖∞ ‖u‖∞ + ‖f‖∞)`, the largest of the cases solved together; dimensionless.
     pub residual: f64,
 }
 
@@ -109,10 +113,12 @@ impl Problem<'_> {
         }
         let matrix = assembly::stiffness(self.mesh, self.materials, self.supports, &pattern);
         let dofs = pattern.dofs;
-        let info = SystemInfo { n_unknowns: matrix.n, n_entries: matrix.rows.len() };
+        let (n_unknowns, n_entries) = (matrix.n, matrix.rows.len());
         let factorization = Symbolic::new(&matrix, &elimination_order(self.mesh, &dofs))
             .and_then(|symbolic| Factorization::new(matrix, symbolic.into(), &SolveParams::default(), buffers))
             .map_err(|cause| SystemError::Solve { cause, place_m: cause.unknown().and_then(|unknown| self.place_m(&dofs, unknown)) })?;
+        let (n_factor_entries, pivot_ratio) = (factorization.symbolic().n_factor_entries(), factorization.pivot_ratio());
+        let info = SystemInfo { n_unknowns, n_entries, n_factor_entries, pivot_ratio };
         let moved = self.supports.moves().then(|| {
             let u: Vec<f64> = self.supports.prescribed_m().iter().map(|p| p.unwrap_or(0.0)).collect();
             let forces = self.forces_n_per_m(&u);
@@ -174,13 +180,12 @@ impl System {
                 right[case * n + free as usize] = loads[dof] - self.moved.as_ref().map_or(0.0, |(_, forces)| forces[dof]);
             }
         }
-        let mut solved = right.clone();
-        self.factorization.solve(&mut solved, loads_n_per_m.len()).map_err(|cause| SystemError::Solve { cause, place_m: None })?;
-        let cases = solved.chunks_exact(n).zip(right.chunks_exact(n)).enumerate();
-        cases.map(|(case, (x, f))| self.solution(case, x, f)).collect()
+        let solved =
+            self.factorization.solve(&mut right, loads_n_per_m.len()).map_err(|cause| SystemError::Solve { cause, place_m: None })?;
+        right.chunks_exact(n).enumerate().map(|(case, x)| self.solution(case, x, solved.backward_error)).collect()
     }
 
-    fn solution(&self, case: usize, x: &[f64], f: &[f64]) -> Result<Solution, SystemError> {
+    fn solution(&self, case: usize, x: &[f64], residual: f64) -> Result<Solution, SystemError> {
         if !x.iter().all(|u| u.is_finite()) {
             return Err(SystemError::NotFinite { case });
         }
@@ -188,28 +193,8 @@ impl System {
         for (dof, &free) in self.dofs.free_of_dof.iter().enumerate().filter(|(_, f)| **f != PRESCRIBED) {
             displacements_m[dof] = x[free as usize];
         }
-        Ok(Solution { displacements_m, residual: backward_error(self.factorization.matrix(), x, f) })
+        Ok(Solution { displacements_m, residual })
     }
-}
-
-/// `max |f − K x| / max (|K| |x| + |f|)`, 0 when both are 0.
-fn backward_error(matrix: &SymmetricCsc, x: &[f64], f: &[f64]) -> f64 {
-    let mut left = vec![0.0; matrix.n];
-    let mut size = vec![0.0; matrix.n];
-    for column in 0..matrix.n {
-        for entry in matrix.column_starts[column] as usize..matrix.column_starts[column + 1] as usize {
-            let (row, value) = (matrix.rows[entry] as usize, matrix.values[entry]);
-            left[row] += value * x[column];
-            size[row] += (value * x[column]).abs();
-            if row != column {
-                left[column] += value * x[row];
-                size[column] += (value * x[row]).abs();
-            }
-        }
-    }
-    let worst = left.iter().zip(f).map(|(l, f)| (f - l).abs()).fold(0.0, f64::max);
-    let largest = size.iter().zip(f).map(|(s, f)| s + f.abs()).fold(0.0, f64::max);
-    if 0.0 < largest { worst / largest } else { 0.0 }
 }
 
 #[cfg(test)]

@@ -4,7 +4,6 @@ use super::{RecoveredLayout, Recovery, RecoveryParams, sample_places_m};
 use crate::assembly::elements_of_nodes;
 use crate::element::{NODE_XI, SIDES};
 use crate::mesh::Mesh;
-use crate::quadrature::TRIANGLE_DEGREE_2;
 
 /// Elements that a patch at the boundary is widened to: 18 samples for 6 terms, as many as a usual inner patch has.
 const BOUNDARY_PATCH: usize = 6;
@@ -152,54 +151,49 @@ impl Builder<'_> {
 
     fn rows(self) -> Recovery {
         let mut row_starts = vec![0u32];
-        let (mut samples, mut weights) = (Vec::new(), Vec::new());
-        let mut row: Vec<(u32, f64)> = Vec::new();
+        let (mut elements, mut weights) = (Vec::new(), Vec::new());
         for &(node, element, local) in &self.origin {
-            row.clear();
+            let start = elements.len();
             let at = self.mesh.points_m[node as usize];
-            let corners = self.sources(element, local as usize);
-            if corners.is_empty() {
-                push_extrapolation(&mut row, element, NODE_XI[local as usize]);
+            let sources = self.sources(element, local as usize);
+            let share = 1.0 / sources.iter().flatten().count() as f64;
+            if sources.iter().all(Option::is_none) {
+                elements.push(element);
+                weights.push(extrapolation(NODE_XI[local as usize]));
             }
-            for &corner in &corners {
-                let Some(patch) = &self.patches[corner as usize] else { continue };
-                let numbers = patch.elements.iter().flat_map(|&e| 3 * e..3 * e + 3);
-                row.extend(numbers.zip(patch.fit.weights_at(at, 1.0 / corners.len() as f64)));
-            }
-            row.sort_by_key(|(sample, _)| *sample);
-            for &(sample, weight) in &row {
-                if row_starts.last().is_some_and(|&s| (s as usize) < samples.len()) && samples.last() == Some(&sample) {
-                    *weights.last_mut().expect("as long as samples") += weight;
-                } else {
-                    samples.push(sample);
-                    weights.push(weight);
+            for patch in sources.into_iter().flatten() {
+                let own = elements.len();
+                for (&e, w) in patch.elements.iter().zip(patch.fit.weights_at(at, share)) {
+                    // Patches of both ends share elements: add up, keep one entry an element.
+                    match elements[start..own].iter().position(|&known| known == e) {
+                        Some(k) => (0..3).for_each(|i| weights[start + k][i] += w[i]),
+                        None => {
+                            elements.push(e);
+                            weights.push(w);
+                        }
+                    }
                 }
             }
-            row_starts.push(samples.len() as u32);
+            row_starts.push(elements.len() as u32);
         }
         let layout = RecoveredLayout { n: self.origin.len(), element_nodes: self.element_nodes };
-        Recovery { layout, row_starts, samples, weights }
+        Recovery { layout, row_starts, elements, weights }
     }
 
-    /// Recovered corners whose patches give the value at a local node of an element: itself, both ends of its side, or the other two corners of
+    /// Patches that give the value at a local node of an element: its own, those of both ends of its side, or those of the other two corners of
     /// the element at a singular corner.
-    fn sources(&self, element: u32, local: usize) -> Vec<u32> {
-        let ids = &self.element_nodes[element as usize];
-        let of = |list: &[usize]| list.iter().map(|&k| ids[k]).filter(|&id| self.patches[id as usize].is_some()).collect::<Vec<_>>();
-        if 3 <= local {
-            return of(&SIDES[local - 3][..2]);
+    fn sources(&self, element: u32, local: usize) -> [Option<&Patch>; 2] {
+        let of = |k: usize| self.patches[self.element_nodes[element as usize][k] as usize].as_ref();
+        match local {
+            3.. => [of(SIDES[local - 3][0]), of(SIDES[local - 3][1])],
+            _ if of(local).is_some() => [of(local), None],
+            _ => [of((local + 1) % 3), of((local + 2) % 3)],
         }
-        let own = of(&[local]);
-        if own.is_empty() { of(&[(local + 1) % 3, (local + 2) % 3]) } else { own }
     }
 }
 
 /// Linear extrapolation from the element's own three samples, where no patch is left: `L_i` of the sample triangle is `2 L_i − 1/3`.
-fn push_extrapolation(row: &mut Vec<(u32, f64)>, element: u32, xi: [f64; 2]) {
-    for (k, (place, _)) in TRIANGLE_DEGREE_2.iter().enumerate() {
-        let area = [1.0 - xi[0] - xi[1], xi[0], xi[1]];
-        let corner =
-            [1.0 - place[0] - place[1], place[0], place[1]].iter().position(|&l| 0.5 < l).expect("each sample is nearest to one corner");
-        row.push((3 * element + k as u32, 2.0 * area[corner] - 1.0 / 3.0));
-    }
+fn extrapolation(xi: [f64; 2]) -> [f64; 3] {
+    // The samples lie toward the corners in the order of TRIANGLE_DEGREE_2.
+    [1.0 - xi[0] - xi[1], xi[0], xi[1]].map(|l| 2.0 * l - 1.0 / 3.0)
 }

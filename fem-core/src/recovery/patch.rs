@@ -35,10 +35,11 @@ impl Fit {
         Some(Self { frame, inverse })
     }
 
-    /// Weights of the samples on the polynomial's value at a point, times `share`, one after the other.
-    pub(super) fn weights_at(&self, point_m: [f64; 2], share: f64) -> impl Iterator<Item = f64> + '_ {
+    /// Weights of the samples on the polynomial's value at a point, times `share`, three for each element.
+    pub(super) fn weights_at(&self, point_m: [f64; 2], share: f64) -> impl Iterator<Item = [f64; 3]> + '_ {
         let t = self.frame.terms(point_m).map(|v| share * v);
-        self.inverse.iter().map(move |c| t.iter().zip(c).map(|(t, c)| t * c).sum())
+        let weight = move |c: &[f64; N_TERMS]| t.iter().zip(c).map(|(t, c)| t * c).sum::<f64>();
+        self.inverse.chunks_exact(3).map(move |c| [weight(&c[0]), weight(&c[1]), weight(&c[2])])
     }
 }
 

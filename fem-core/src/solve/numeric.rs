@@ -62,6 +62,11 @@ impl Factorization {
         &self.matrix
     }
 
+    /// Smallest over largest squared diagonal entry of `L`.
+    pub fn pivot_ratio(&self) -> f64 {
+        self.pivot_ratio
+    }
+
     /// Structure of the factor.
     pub fn symbolic(&self) -> &Arc<Symbolic> {
         &self.symbolic
