@@ -55,6 +55,7 @@ pub(crate) fn run(scope: Scope, args: &RunArgs, interrupt: &Interrupt) -> Exit {
         provenance: &provenance,
         letterhead: letterhead.ok().flatten(),
         linear_triangles: args.linear_triangles,
+        threads: args.threads.map_or_else(all_threads, usize::from),
     };
     let written = match staging.map(|staging| write::all(&job, staging, &reporter)).transpose() {
         Ok(written) => written,
@@ -69,6 +70,10 @@ pub(crate) fn run(scope: Scope, args: &RunArgs, interrupt: &Interrupt) -> Exit {
 fn fail(exit: Exit, message: &dyn std::fmt::Display) -> Exit {
     say(&format!("error: {message}"));
     exit
+}
+
+fn all_threads() -> usize {
+    std::thread::available_parallelism().map_or(1, std::num::NonZero::get)
 }
 
 /// `assess` and `mesh` always write; `check` and `deepen` where a folder is named.

@@ -25,6 +25,8 @@ pub(crate) struct Job<'a> {
     pub letterhead: Option<String>,
     /// Three-node triangles in fields files.
     pub linear_triangles: bool,
+    /// Number of threads, at least 1.
+    pub threads: usize,
 }
 
 /// Why nothing was written.
@@ -104,9 +106,18 @@ fn fields(job: &Job<'_>, staging: &mut Staging, reporter: &Reporter) -> Result<(
     let Some(first) = fields.first() else { return Ok(()) };
     let depths_m: Vec<f64> = fields.iter().map(|field| field.depth_m).collect();
     staging.write("fields/series.pvd", vtk::series(&depths_m, &first.rock_names).as_bytes())?;
-    for (i, (snapshot, name)) in fields.iter().zip(vtk::file_names(&depths_m)).enumerate() {
-        reporter.step("writing fields", i, fields.len());
-        staging.write(&format!("fields/{name}"), &vtk::field(snapshot, job.linear_triangles)?)?;
+    let names = vtk::file_names(&depths_m);
+    // As many at a time as there are threads: the texts are large.
+    for (i_batch, batch) in fields.chunks(job.threads).enumerate() {
+        let first = i_batch * job.threads;
+        reporter.step("writing fields", first, fields.len());
+        let texts: Vec<_> = std::thread::scope(|scope| {
+            let started: Vec<_> = batch.iter().map(|snapshot| scope.spawn(|| vtk::field(snapshot, job.linear_triangles))).collect();
+            started.into_iter().map(|thread| thread.join().unwrap_or_else(|panic| std::panic::resume_unwind(panic))).collect()
+        });
+        for (text, name) in texts.into_iter().zip(&names[first..]) {
+            staging.write(&format!("fields/{name}"), &text?)?;
+        }
     }
     Ok(())
 }

@@ -30,6 +30,7 @@ fn assess_writes_every_file_of_the_contract() {
         provenance: &fixture::provenance(),
         letterhead: None,
         linear_triangles: false,
+        threads: 2,
     };
     let staging = Staging::open(&target, true, &Interrupt::default()).unwrap();
     let told = all(&job, staging, &Reporter::new(true)).unwrap();

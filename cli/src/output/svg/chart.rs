@@ -184,7 +184,7 @@ fn y_range(cautious: &[(f64, &CheckResult)], best: &[(f64, &CheckResult)]) -> [f
     let closed = rows().filter_map(|check| check.closed_form_demand_kpa).fold(0.0, f64::max);
     let top = demands[1].max(capacity).max(closed.min(1.5 * demands[1].max(capacity))).max(1e-6);
     // Compression is shown down to the size of the capacity: how deep it goes does not matter.
-    [demands[0].max(-0.6 * top), 1.06 * top]
+    [demands[0].max(-0.6 * top), 1.16 * top]
 }
 
 /// Bars of the critical depth (or, where there is none, of the utilization) from the low to the high value of each quantity.
