@@ -165,12 +165,13 @@ impl Builder<'_> {
                 let own = elements.len();
                 for (&e, w) in patch.elements.iter().zip(patch.fit.weights_at(at, share)) {
                     // Patches of both ends share elements: add up, keep one entry an element.
-                    match elements[start..own].iter().position(|&known| known == e) {
-                        Some(k) => (0..3).for_each(|i| weights[start + k][i] += w[i]),
-                        None => {
-                            elements.push(e);
-                            weights.push(w);
+                    if let Some(k) = elements[start..own].iter().position(|&known| known == e) {
+                        for i in 0..3 {
+                            weights[start + k][i] += w[i];
                         }
+                    } else {
+                        elements.push(e);
+                        weights.push(w);
                     }
                 }
             }

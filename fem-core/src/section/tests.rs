@@ -154,6 +154,52 @@ fn stress_along_the_line_agrees_within_its_own_error() {
 }
 
 #[test]
+fn both_sides_of_a_cut_through_a_curved_body_agree() {
+    // Source: action and reaction. An arch leg with curved sides under weight, pore pressure, initial stress and pressure on its curved back:
+    // the part above and the part below the cut must give the same N and V, and M with the other sign.
+    let polar = |[u, v]: [f64; 2]| {
+        let (r, a) = (2.0 + u, std::f64::consts::FRAC_PI_2 * v);
+        [r * a.cos(), r * a.sin()]
+    };
+    let mesh = grid(Grid { n_u: 3, n_v: 7, curved: true }, &polar, &|_, _| true);
+    let mut supports = Supports::none(mesh.points_m.len());
+    for edge in mesh.edges.iter().filter(|e| e.tag == BOTTOM) {
+        edge.nodes.into_iter().for_each(|n| supports.fix(n));
+    }
+    let given = |_: usize, [x, y]: [f64; 2]| [3e3 * y - 9.81e3 * (4.0 - y), 2e3 * x - 9.81e3 * (4.0 - y), 1e3 * (x - y)];
+    let pressure = |p: [f64; 2]| 9.81e3 * (4.0 - p[1]);
+    let back: Vec<_> = mesh.edges.iter().copied().filter(|e| e.tag == RIGHT).collect();
+    let parts = [
+        body_force(&mesh, &|_, _| [1e3, -GAMMA]),
+        edge_pressure(&mesh, &back, &[], &pressure),
+        crate::assembly::initial_stress(&mesh, &given),
+    ];
+    let load: Vec<f64> = (0..parts[0].len()).map(|i| parts.iter().map(|p| p[i]).sum()).collect();
+    let rock = rock();
+    let u =
+        Problem { mesh: &mesh, materials: &rock, supports: &supports }.factor().unwrap().solve(&[load]).unwrap().remove(0).displacements_m;
+    let loads = CutLoads {
+        body_force_n_per_m3: &|_| [1e3, -GAMMA],
+        edges: &back,
+        breaks_m: &[],
+        traction_pa: &|p, n| [-pressure(p) * n[0], -pressure(p) * n[1]],
+        given_stress_pa: &given,
+    };
+    let locator = Locator::new(&mesh);
+    for (outside, inside) in [(0.71, 0.83), (0.4, 0.22), (1.1, 1.3)] {
+        // The ends overshoot the body a little; beyond it there is nothing.
+        let ends = ([3.02 * f64::cos(outside), 3.02 * f64::sin(outside)], [1.98 * f64::cos(inside), 1.98 * f64::sin(inside)]);
+        let [a, b] = [Cut { from_m: ends.0, to_m: ends.1 }, Cut { from_m: ends.1, to_m: ends.0 }]
+            .map(|cut| free_body(&mesh, &locator, cut).unwrap().resultants(&mesh, &rock, &u, &loads));
+        let size = 1e5;
+        close(a.normal_n_per_m, b.normal_n_per_m, 1e-8 * size, "N");
+        close(a.shear_n_per_m, b.shear_n_per_m, 1e-8 * size, "V");
+        close(a.moment_n, -b.moment_n, 1e-8 * size, "M");
+        assert!(a.shear_n_per_m.abs() > 1e3 && a.moment_n.abs() > 1e3, "{a:?}");
+    }
+}
+
+#[test]
 fn a_cut_that_does_not_sever_is_refused() {
     let (mesh, _) = overhang(2, 0.0);
     let locator = Locator::new(&mesh);
