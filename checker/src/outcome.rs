@@ -2,8 +2,10 @@
 //!
 //! `cli` serializes [`Outcome`] as `summary.json` and draws tables, pictures and fields from it and from [`FieldSnapshot`].
 mod derived;
+mod outlook;
 
 pub use derived::{Principal, principal};
+pub use outlook::{AssetInfo, CrossCheck, EvidenceInfo, OutlookInfo, Quantiles, RateInfo, Refusal, SamplingInfo, SetbackInfo, Trigger};
 use serde::Serialize;
 
 /// A point as `[x, z]` in m.

@@ -7,6 +7,7 @@
 //!
 //! A pure function of its input: every sample has a random stream of its own, sums run in index order, so that the same seed
 //! gives the same bits for any number of threads. Equations (7.x) stand in `docs/theory.md`.
+pub mod assess;
 pub mod critical;
 pub mod cycle;
 pub mod demand_model;
@@ -17,6 +18,7 @@ pub mod modes;
 pub mod normal;
 pub mod random;
 pub mod rates;
+pub mod refusals;
 pub mod reliability;
 pub mod sampling;
 pub mod setback;

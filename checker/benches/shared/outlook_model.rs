@@ -25,7 +25,7 @@ fn four_layers(n_depths: usize, density: usize) -> (DemandModel, Variables) {
     coefficients.extend((0..n_layers).map(|i| Coefficient::Input(4 + i)));
     coefficients.extend([Coefficient::One; 3]);
     let strengths = (0..n_layers)
-        .map(|j| StrengthInputs {
+        .map(|j| StrengthInputs::Typed {
             tensile_pa: Factored { input: 8 + 3 * j, factor: 1.0 },
             cohesion_pa: Factored { input: 9 + 3 * j, factor: 1.0 },
             friction_angle_rad: 10 + 3 * j,

@@ -7,6 +7,8 @@ mod evaluate;
 pub use evaluate::{Sample, margin_of};
 pub(super) use evaluate::{circle, place_margin};
 
+use crate::strength::Reductions;
+
 /// Coefficient of one load case.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Coefficient {
@@ -27,15 +29,31 @@ pub struct Factored {
     pub factor: f64,
 }
 
-/// Strengths of one rock or one joint set.
+/// Strengths of one rock or one joint set; numbers are indices of inputs. Partial factors have no place in a probability.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub struct StrengthInputs {
-    /// Tensile strength, Pa.
-    pub tensile_pa: Factored,
-    /// Effective cohesion, Pa.
-    pub cohesion_pa: Factored,
-    /// Effective friction angle, rad: index of the input.
-    pub friction_angle_rad: usize,
+pub enum StrengthInputs {
+    /// Typed or measured strengths.
+    Typed {
+        /// Tensile strength, Pa.
+        tensile_pa: Factored,
+        /// Effective cohesion, Pa.
+        cohesion_pa: Factored,
+        /// Effective friction angle, rad.
+        friction_angle_rad: usize,
+    },
+    /// Rock-mass rating.
+    Rating {
+        /// Geological strength index.
+        gsi: usize,
+        /// Material constant.
+        mi: usize,
+        /// Uniaxial strength of the intact rock, Pa.
+        uniaxial_strength_pa: usize,
+        /// Disturbance factor.
+        disturbance: f64,
+        /// Wet factor and stress range.
+        reductions: Reductions,
+    },
 }
 
 /// How a demand meets its strength. Indices count in [`DemandModel::strengths`].

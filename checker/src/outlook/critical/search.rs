@@ -158,7 +158,8 @@ fn least_margin(asked: &Asked, bound: &Bound, reached: &mut dyn FnMut(usize)) ->
             for (i_place, (shear, normal)) in shear.iter().zip(normal.chunks_exact(strengths.len().max(1))).enumerate() {
                 let share = &places.share[i_place * strengths.len()..(i_place + 1) * strengths.len()];
                 let parts = strengths.iter().zip(share).zip(normal);
-                let capacity: f64 = parts.map(|((&i, share), n)| share * sample.strengths[i][1] + n * sample.strengths[i][2]).sum();
+                let capacity: f64 =
+                    parts.map(|((&i, share), n)| (share * sample.strengths[i][1] + n * sample.strengths[i][2]).max(0.0)).sum();
                 if theta * capacity - shear <= least {
                     least = look(i_place);
                 }

@@ -1,5 +1,10 @@
 //! Margins and utilizations of one sample, exact.
-use super::{Coefficient, DemandModel, Law, Places};
+use super::{Coefficient, DemandModel, Law, Places, StrengthInputs};
+use crate::strength::hoek_brown::Rating;
+use crate::strength::{RockCapacity, StrengthValues};
+
+/// Largest friction angle taken for real, rad (80 degrees).
+const STEEPEST_RAD: f64 = 1.3962634015954636;
 
 /// Coefficients and strengths of one sample.
 #[derive(Debug, Clone, Default, PartialEq)]
@@ -24,13 +29,7 @@ impl Sample {
             Coefficient::Product(i, j) => x[i] * x[j],
         }));
         self.strengths.clear();
-        self.strengths.extend(model.strengths.iter().map(|s| {
-            let cohesion = s.cohesion_pa.factor * x[s.cohesion_pa.input];
-            let tangent = x[s.friction_angle_rad].tan();
-            let tensile = s.tensile_pa.factor * x[s.tensile_pa.input];
-            let cut = if 0.0 < tangent { tensile.min(cohesion / tangent) } else { tensile };
-            [cut, cohesion, tangent]
-        }));
+        self.strengths.extend(model.strengths.iter().map(|s| strength_at(s, x)));
         self.model_factor = model.model_factor.map_or(1.0, |i| x[i]);
     }
 
@@ -42,6 +41,34 @@ impl Sample {
     }
 }
 
+/// `[tensile strength, cohesion, tan phi]` of one entry at inputs `x`.
+///
+/// The tails of a normal distribution may draw what cannot exist: strengths below 0 count as 0, angles and indices are held within
+/// their range, and a rating whose relations have no solution counts as no strength.
+fn strength_at(inputs: &StrengthInputs, x: &[f64]) -> [f64; 3] {
+    match *inputs {
+        StrengthInputs::Typed { tensile_pa, cohesion_pa, friction_angle_rad } => {
+            let cohesion = (cohesion_pa.factor * x[cohesion_pa.input]).max(0.0);
+            let tangent = x[friction_angle_rad].clamp(0.0, STEEPEST_RAD).tan();
+            let tensile = (tensile_pa.factor * x[tensile_pa.input]).max(0.0);
+            let cut = if cohesion < tensile * tangent { cohesion / tangent } else { tensile };
+            [cut, cohesion, tangent]
+        }
+        StrengthInputs::Rating { gsi, mi, uniaxial_strength_pa, disturbance, reductions } => {
+            let rating = Rating {
+                gsi: x[gsi].clamp(5.0, 100.0),
+                mi: x[mi].max(1.0),
+                disturbance,
+                uniaxial_strength_pa: x[uniaxial_strength_pa].max(1.0),
+            };
+            match StrengthValues::HoekBrown(rating).capacity(&reductions) {
+                Ok(RockCapacity::Resists(s)) => [s.tensile_strength_pa, s.cohesion_pa, s.tan_friction],
+                Ok(RockCapacity::NoStrength) | Err(_) => [0.0; 3],
+            }
+        }
+    }
+}
+
 /// Smallest margin of a limit at a depth over all its places, Pa, with its place; `None` where the limit has no place.
 ///
 /// The margin is `model factor x capacity - demand`, negative where the limit is passed, continuous in every input:
@@ -49,7 +76,7 @@ impl Sample {
 /// ```text
 /// tension, fibre   theta s_t - sigma                         sigma: major principal stress or fibre stress
 /// shear            c + p t - R sqrt(1 / theta^2 + t^2)       negative exactly when F < 1 / theta; p = -(xx + yy) / 2, R: radius
-/// sliding          theta sum(share c + sigma_n t) - |tau|
+/// sliding          theta sum(max(0, share c + sigma_n t)) - |tau|
 /// ```
 ///
 /// A stress beyond the apex of the shear law has a negative margin here: there the major principal stress is at least
@@ -87,7 +114,7 @@ pub(in crate::outlook) fn place_margin(law: &Law, places: &Places, i_place: usiz
                 .iter()
                 .zip(share)
                 .enumerate()
-                .map(|(r, (&i, share))| share * sample.strengths[i][1] + of(1 + r) * sample.strengths[i][2])
+                .map(|(r, (&i, share))| (share * sample.strengths[i][1] + of(1 + r) * sample.strengths[i][2]).max(0.0))
                 .sum();
             theta * capacity - of(0).abs()
         }

@@ -25,7 +25,7 @@ pub(in crate::outlook) fn fibre(
     let model = DemandModel {
         depths_m: depths_m.to_vec(),
         coefficients: vec![Coefficient::Input(1)],
-        strengths: vec![StrengthInputs { tensile_pa: whole(0), cohesion_pa: whole(2), friction_angle_rad: 3 }],
+        strengths: vec![StrengthInputs::Typed { tensile_pa: whole(0), cohesion_pa: whole(2), friction_angle_rad: 3 }],
         situations: vec![SituationChance { name: "ordinary".into(), annual_chance: None }],
         limits: vec![Limit { check: "section bending", situation: 0, law: Law::Fibre { strength: 0 } }],
         places: depths_m.iter().map(|d| vec![Places { at_m: vec![[0.0, 0.0]], unit: vec![k(*d)], share: vec![] }]).collect(),
