@@ -19,7 +19,7 @@ struct Accuracy {
 impl Factorization {
     /// Solves `A x = b` in place for `n_rhs` right-hand sides, one after the other in `rhs`, shape `[n_rhs][n]`.
     ///
-    /// The residual of every solution is computed; above [`super::SolveParams::refine_above`] one step of iterative refinement follows.
+    /// The residual of every solution is computed; with a backward error above [`super::SolveParams::refine_above`] one step of iterative refinement follows.
     ///
     /// # Errors
     /// [`SolveError::LoadNotFinite`], [`SolveError::Inaccurate`], [`SolveError::TooLarge`] when the memory cannot be had; `rhs` is then
@@ -58,22 +58,21 @@ impl Factorization {
         self.apply_inverse(block, scratch);
         for (i, (x, b)) in block.chunks_mut(n).zip(loads.chunks(n)).enumerate() {
             let mut residual = self.residual(x, b);
-            let mut relative_residual = relative(&residual, b);
-            if !is_at_most(relative_residual, self.params.refine_above) {
+            let mut backward_error = self.backward_error(&residual, x, b);
+            if !is_at_most(backward_error, self.params.refine_above) {
                 self.apply_inverse(&mut residual, scratch);
                 for (x, correction) in x.iter_mut().zip(&residual) {
                     *x += correction;
                 }
                 residual = self.residual(x, b);
-                relative_residual = relative(&residual, b);
+                backward_error = self.backward_error(&residual, x, b);
                 worst.n_refined += 1;
             }
-            if !is_at_most(relative_residual, self.params.refuse_above) {
-                return Err(SolveError::Inaccurate { rhs: first + i, relative_residual });
+            if !is_at_most(backward_error, self.params.refuse_above) {
+                return Err(SolveError::Inaccurate { rhs: first + i, backward_error });
             }
-            let scale = self.matrix_norm * largest(x) + largest(b);
-            worst.relative_residual = worst.relative_residual.max(relative_residual);
-            worst.backward_error = worst.backward_error.max(if scale > 0.0 { largest(&residual) / scale } else { 0.0 });
+            worst.relative_residual = worst.relative_residual.max(ratio(norm(&residual), norm(b)));
+            worst.backward_error = worst.backward_error.max(backward_error);
         }
         Ok(())
     }
@@ -94,6 +93,11 @@ impl Factorization {
         }
     }
 
+    /// `‖r‖∞ / (‖A‖∞ ‖x‖∞ + ‖b‖∞)`; not a number when a value of `x` is not.
+    fn backward_error(&self, residual: &[f64], x: &[f64], b: &[f64]) -> f64 {
+        ratio(largest(residual), self.matrix_norm * largest(x) + largest(b))
+    }
+
     fn residual(&self, x: &[f64], b: &[f64]) -> Vec<f64> {
         let mut residual = self.matrix.multiply(x);
         for (r, b) in residual.iter_mut().zip(b) {
@@ -103,11 +107,13 @@ impl Factorization {
     }
 }
 
-/// `‖r‖₂ / ‖b‖₂`, zero for a right-hand side of zeros, whose solution is exact.
-fn relative(residual: &[f64], b: &[f64]) -> f64 {
-    let norm = |v: &[f64]| v.iter().map(|x| x * x).sum::<f64>().sqrt();
-    let (numerator, denominator) = (norm(residual), norm(b));
+/// Zero for a right-hand side of zeros, whose solution is exact.
+fn ratio(numerator: f64, denominator: f64) -> f64 {
     if denominator > 0.0 { numerator / denominator } else { numerator }
+}
+
+fn norm(v: &[f64]) -> f64 {
+    v.iter().map(|x| x * x).sum::<f64>().sqrt()
 }
 
 /// False for a value that is not a number, which must be refined and refused.
@@ -115,6 +121,7 @@ fn is_at_most(value: f64, limit: f64) -> bool {
     value <= limit
 }
 
+/// Largest magnitude; not a number when a value is not, unlike `f64::max`.
 fn largest(v: &[f64]) -> f64 {
-    v.iter().fold(0.0, |m, x| m.max(x.abs()))
+    v.iter().fold(0.0, |m: f64, x| if m < x.abs() || x.is_nan() { x.abs() } else { m })
 }
