@@ -210,6 +210,17 @@ fn body_without_supports_is_refused() {
     }
 }
 
+/// `[[1, 1], [1, 1 + e]]` has the pivots 1 and `e`. Source: hand elimination.
+#[test]
+fn pivot_of_rounding_size_is_refused() {
+    let with = |e: f64| SymmetricCsc { n: 2, column_starts: vec![0, 2, 3], rows: vec![0, 1, 1], values: vec![1.0, 1.0, 1.0 + e] };
+    let share = 4.0 * f64::EPSILON;
+    let error = factor(with(share), &[0, 1], &SolveParams::default()).unwrap_err();
+    let SolveError::NotHeld { unknown: 1, pivot_share } = error else { panic!("{error}") };
+    assert!((pivot_share / share - 1.0).abs() < 1e-9, "{pivot_share}");
+    assert!(factor(with(1e-9), &[0, 1], &SolveParams::default()).is_ok());
+}
+
 #[test]
 fn inaccurate_solutions_are_refused() {
     let (matrix, order, mut loads) = sector(8, 12);
