@@ -1,0 +1,2 @@
+//! Tests of the whole path.
+mod plain;
