@@ -27,8 +27,7 @@ pub enum Command {
     Deepen(RunArgs),
     /// Geometry and mesh only: picture and fields file, nothing is solved
     Mesh(RunArgs),
-    /// Strengths from laboratory results
-    #[command(hide = true)]
+    /// Strengths from laboratory results (CSV or AGS4): fits, scatter, 5 % fractiles and a rock table to paste
     Lab(LabArgs),
     /// Write a commented starter model that runs as it is
     New(NewArgs),
@@ -78,6 +77,12 @@ pub struct LabArgs {
     /// Laboratory file
     #[arg(value_name = "FILE")]
     pub file: PathBuf,
+    /// Rock of the file, where it holds several
+    #[arg(long, value_name = "NAME")]
+    pub rock: Option<String>,
+    /// Draw the shear fits into this SVG file; it must not exist yet
+    #[arg(long, value_name = "FILE")]
+    pub plot: Option<PathBuf>,
     /// Print the results object on standard output and nothing else
     #[arg(long)]
     pub json: bool,

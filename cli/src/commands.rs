@@ -1,5 +1,6 @@
 //! What each verb of the command line does: reads, calls `checker`, writes, and says how it ended.
 mod analysis;
+mod lab;
 mod load;
 mod new;
 mod schema;
@@ -27,10 +28,7 @@ pub fn run(cli: &Cli) -> Exit {
         Command::Mesh(args) => section::run(Scope::Mesh, args, &interrupt),
         Command::New(args) => new::run(&args.file),
         Command::Schema => schema::run(),
-        Command::Lab(_) => {
-            say("error: this command is not available yet");
-            Exit::Usage
-        }
+        Command::Lab(args) => lab::run(args),
     }
 }
 

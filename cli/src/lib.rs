@@ -7,6 +7,7 @@ pub mod commands;
 pub mod diagnostics;
 pub mod exit;
 pub mod interrupt;
+pub mod lab_file;
 pub mod model_file;
 pub mod output;
 pub mod progress;

@@ -2,7 +2,7 @@
 use super::{
     End, Reductions, RockCapacity, StrengthError, StrengthFactors, StrengthValues, characteristic, hoek_brown, mean, strength_factors,
 };
-use crate::diagnostic::{Checked, Diagnostic};
+use crate::diagnostic::{Checked, Diagnostic, child};
 use crate::model::{Cohesive, HoekBrown, PartialFactors, Rock, RockStrength, StrengthBasis, Uncertain};
 
 /// Which end of the stated numbers is used.
@@ -34,9 +34,9 @@ const LARGEST_OBSERVED_MASS_FACTOR: f64 = 0.3;
 /// its stress range are taken. `cliff_height_m` sets that range.
 ///
 /// # Errors
-/// One [`Diagnostic`] for everything that keeps the rock from having a strength, at `rocks.<name>`.
+/// One [`Diagnostic`] for everything that keeps the rock from having a strength, at `rocks.<name>` (see [`child`]).
 pub fn design(rock: &Rock, inputs: Inputs, stated: &PartialFactors, cliff_height_m: f64) -> Result<Checked<Resolved>, Vec<Diagnostic>> {
-    let at = format!("rocks.{}", rock.name);
+    let at = child("rocks", &rock.name);
     let fault = |error: StrengthError| vec![as_diagnostic(error, &at)];
     let cautious = inputs == Inputs::Cautious;
     let factors = strength_factors(stated, cautious);
