@@ -23,14 +23,18 @@ fn carry_out(args: &LabArgs) -> Result<Exit, Exit> {
         Exit::File
     })?;
     let fail = |faults: Vec<Diagnostic>| {
-        faults.iter().for_each(|fault| say_finding(&shown, fault));
+        for fault in &faults {
+            say_finding(&shown, fault);
+        }
         Exit::ModelWrong
     };
     let file = lab_file::read(&bytes).map_err(fail)?;
     let summary = lab_file::summary(&file.value.results, args.rock.as_deref()).map_err(|fault| fail(vec![fault]))?;
     let mut warnings = file.warnings;
     warnings.extend(summary.warnings);
-    warnings.iter().for_each(|warning| say_finding(&shown, warning));
+    for warning in &warnings {
+        say_finding(&shown, warning);
+    }
 
     let name = args.file.file_name().map_or_else(|| shown.clone(), |name| name.to_string_lossy().into_owned());
     let named = file.value.results.rocks();

@@ -16,7 +16,7 @@ pub(super) fn decode(bytes: &[u8]) -> Result<String, Diagnostic> {
         return Err(Diagnostic::error("lab.encoding", at, "the file is UTF-16").hint("save it as UTF-8"));
     }
     if let Some(i) = bytes.iter().position(|b| *b == 0) {
-        let line = 1 + bytes[..i].iter().filter(|b| **b == b'\n').count();
+        let line = bytes[..i].split(|b| *b == b'\n').count();
         return Err(Diagnostic::error("lab.encoding", format!("line {line}"), "a zero byte: this is no text file"));
     }
     let bytes = bytes.strip_prefix(&[0xEF, 0xBB, 0xBF]).unwrap_or(bytes);

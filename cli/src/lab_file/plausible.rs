@@ -39,17 +39,17 @@ pub(super) fn check(results: &LabResults, warnings: &mut Vec<Diagnostic>) {
             } else {
                 (format!("{:.4} kPa", value / 1e3), "1000 times larger")
             };
-            warn(origin, format!("{} of {shown}", kind.what), times, warnings);
+            warn(origin, &format!("{} of {shown}", kind.what), times, warnings);
         }
     }
     let densities = results.density.iter().flat_map(|d| [d.bulk_kg_per_m3, d.dry_kg_per_m3].into_iter().flatten().map(|v| (&d.origin, v)));
     if let Some((origin, value)) = densities.into_iter().find(|(_, v)| !(DENSITY.0 <= *v && *v <= DENSITY.1)) {
         let times = if DENSITY.1 < value { "1000 times smaller" } else { "1000 times larger" };
-        warn(origin, format!("density of {value} kg/m3"), times, warnings);
+        warn(origin, &format!("density of {value} kg/m3"), times, warnings);
     }
 }
 
-fn warn(origin: &Origin, what: String, times: &str, warnings: &mut Vec<Diagnostic>) {
+fn warn(origin: &Origin, what: &str, times: &str, warnings: &mut Vec<Diagnostic>) {
     let message = format!("specimen {}: {what} is outside what rock shows; the meant unit may be {times}", origin.specimen);
     let hint = "check the unit of the column or heading: kPa or MPa, kg/m3 or Mg/m3";
     warnings.push(Diagnostic::warning("lab.unit-doubt", format!("line {}", origin.line), message).hint(hint));

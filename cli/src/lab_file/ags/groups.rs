@@ -102,7 +102,8 @@ impl Parser<'_> {
             }
             "DATA" => self.data(line, fields),
             other => {
-                self.fault(line, "lab.row", format!("a row starts with `{other}`"), "rows start with GROUP, HEADING, UNIT, TYPE or DATA")
+                let message = format!("a row starts with `{other}`");
+                self.fault(line, "lab.row", message, "rows start with GROUP, HEADING, UNIT, TYPE or DATA");
             }
         }
     }

@@ -82,12 +82,11 @@ impl<'a> Table<'a> {
 
     /// Hole, sample, specimen and depth as one name, the same in every group.
     pub(super) fn origin(&self, row: &Row) -> Origin {
-        let parts = ["LOCA_ID", "SAMP_REF", "SAMP_ID", "SPEC_REF"].iter().filter_map(|heading| self.text(row, heading));
-        let mut specimen = parts.collect::<Vec<_>>().join(" ");
+        let named = ["LOCA_ID", "SAMP_REF", "SAMP_ID", "SPEC_REF"].iter().filter_map(|heading| self.text(row, heading));
+        let mut parts: Vec<String> = named.map(str::to_owned).collect();
         let depth = self.text(row, "SPEC_DPTH").or_else(|| self.text(row, "SAMP_TOP"));
-        if let Some(depth) = depth {
-            specimen = format!("{specimen} at {depth} m").trim().to_owned();
-        }
+        parts.extend(depth.map(|depth| format!("at {depth} m")));
+        let specimen = parts.join(" ");
         let depth_m = depth.and_then(|d| d.parse::<f64>().ok());
         let hole = self.text(row, "LOCA_ID");
         let rock = hole.zip(depth_m).and_then(|(hole, z)| self.strata.iter().find(|s| s.hole == hole && s.top_m <= z && z < s.base_m));

@@ -141,13 +141,11 @@ impl<'a> Cells<'a> {
     }
 
     fn specimen(&mut self) -> String {
-        match self.text("specimen") {
-            Some(name) => name.to_owned(),
-            None => {
-                self.fault("lab.specimen", "column `specimen` is empty".to_owned(), "name the specimen as on its box");
-                String::new()
-            }
+        let name = self.text("specimen");
+        if name.is_none() {
+            self.fault("lab.specimen", "column `specimen` is empty".to_owned(), "name the specimen as on its box");
         }
+        name.unwrap_or_default().to_owned()
     }
 
     fn word<T: Copy>(&mut self, base: &str, known: &[(&str, T)]) -> Option<T> {
