@@ -24,7 +24,7 @@ pub struct Resolved {
 }
 
 /// Share of intact tensile strength above which a mass factor is beyond what collapses have shown.
-/// Overhangs that fell on reef limestone and weak sandstone mobilised 4-28 % of the intact strength (beam formula, compiled field cases).
+/// Overhangs that fell on reef limestone and weak sandstone mobilized 4-28 % of the intact strength (beam formula, compiled field cases).
 const LARGEST_OBSERVED_MASS_FACTOR: f64 = 0.3;
 
 /// Design values of a rock.
@@ -206,7 +206,7 @@ impl Notes<'_> {
             if LARGEST_OBSERVED_MASS_FACTOR < tension {
                 self.warn(
                     "rock.mass-factor",
-                    format!("{:.0} % of the intact tensile strength is used; documented collapses mobilised 5-30 % of it", 100.0 * tension),
+                    format!("{:.0} % of the intact tensile strength is used; documented collapses mobilized 5-30 % of it", 100.0 * tension),
                     "use a lower `mass_factor.tension`, or back-analysed or block-scale strengths",
                 );
             }

@@ -159,7 +159,7 @@ pub(super) fn size(results: &LabResults, summary: &LabSummary, warnings: &mut Ve
         warnings.push(Diagnostic::warning("lab.squat-specimen", at(&first.origin), message));
     }
     if summary.tensile.is_some() || summary.peak.is_some() {
-        let message = "these are strengths of specimens; documented collapses mobilised 5-30 % of the tensile strength of specimens";
+        let message = "these are strengths of specimens; documented collapses mobilized 5-30 % of the tensile strength of specimens";
         let hint = "state `mass_factor` by judgment of joints, blocks and back-analysis; no test gives it";
         warnings.push(Diagnostic::warning("lab.size-effect", "the file", message).hint(hint));
     }
