@@ -35,6 +35,14 @@ pub struct LabFile {
     pub results: LabResults,
 }
 
+/// The text of a laboratory file, whose lines the findings count.
+///
+/// # Errors
+/// The bytes are no text.
+pub fn text_of(bytes: &[u8]) -> Result<String, Diagnostic> {
+    decode::decode(bytes)
+}
+
 /// Reads a laboratory file of either format.
 ///
 /// # Errors

@@ -4,6 +4,7 @@ use checker::model::{TestedState, Uncertain};
 
 mod ags_files;
 mod csv_files;
+mod in_a_model;
 mod outputs;
 
 /// The whole list of findings, one line each, for messages and comparisons.

@@ -1,5 +1,6 @@
 //! Turns what was read into the model: words to choices, names to indices, files to texts.
 mod coast;
+mod lab;
 mod rock;
 mod site;
 mod water;

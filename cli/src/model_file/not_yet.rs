@@ -26,8 +26,6 @@ const fn not_yet(key: &'static str, form: Form, what: &'static str) -> NotYet {
 
 /// The list; an entry is deleted when its capability is built.
 pub(super) const NOT_YET_AVAILABLE: &[NotYet] = &[
-    not_yet("rocks.*.lab", Form::Any, "strengths from a laboratory file"),
-    not_yet("rocks.*.hoek_brown", Form::Any, "strengths from a rock-mass rating"),
     not_yet("joint_sets", Form::Any, "sets of planes of weakness"),
     not_yet("cracks", Form::Any, "seen cracks"),
     not_yet("situations[].groundwater", Form::NotAWord, "a water table"),

@@ -2,6 +2,7 @@
 use super::super::tree::Tab;
 use super::{Build, apparent_dip};
 use checker::diagnostic::Diagnostic;
+use checker::lab::LabRock;
 use checker::model::{
     Cohesive, CrsLocation, DiscontinuitySurvey, HoekBrown, JointKind, JointSet, MassFactor, Rock, RockStrength, StrengthBasis, TestedState,
 };
@@ -10,8 +11,8 @@ const TYPED: [&str; 3] = ["tensile_strength_kpa", "cohesion_kpa", "friction_angl
 
 impl Build<'_> {
     pub(super) fn rock(&mut self, name: &str, table: &Tab) -> Rock {
-        let strength = self.strength(table);
-        let strength_basis = self.strength_basis(table, &strength);
+        let (strength, lab) = self.strength(name, table);
+        let strength_basis = self.strength_basis(table);
         let unit_weight_n_per_m3 = table.uncertain("unit_weight_kn_m3");
         Rock {
             name: name.to_owned(),
@@ -22,22 +23,17 @@ impl Build<'_> {
             k0: table.uncertain_if("k0"),
             strength_basis,
             mass_factor: self.mass_factor(table, strength_basis),
-            tests: table.integer_if("tests").map(|tests| tests as u32),
+            tests: table.integer_if("tests").map(|tests| tests as u32).or(lab.as_ref().map(|lab| lab.tests)),
             strength,
-            tested: table.text_if("tested").and_then(|word| match word {
-                "dry" => Some(TestedState::Dry),
-                "natural" => Some(TestedState::Natural),
-                "saturated" => Some(TestedState::Saturated),
-                _ => None,
-            }),
+            tested: table.text_if("tested").map_or(lab.as_ref().and_then(|lab| lab.tested), tested_state),
             wet_factor: table.number("wet_factor"),
-            uniaxial_strength_pa: table.uncertain_if("uniaxial_strength_mpa"),
+            uniaxial_strength_pa: table.uncertain_if("uniaxial_strength_mpa").or(lab.and_then(|lab| lab.uniaxial_strength_pa)),
             fracture_toughness_pa_sqrt_m: table.uncertain_if("fracture_toughness_mpa_sqrt_m"),
         }
     }
 
-    /// One source of strength; two are an error that names both lines.
-    fn strength(&mut self, table: &Tab) -> RockStrength {
+    /// One source of strength, with what a laboratory file gives beside it; two are an error that names both lines.
+    fn strength(&mut self, name: &str, table: &Tab) -> (RockStrength, Option<LabRock>) {
         let sources: Vec<&str> = TYPED.into_iter().chain(["lab", "hoek_brown"]).filter(|key| table.has(key)).collect();
         let is_typed = |key: &str| TYPED.contains(&key);
         if let Some(first) = sources.first() {
@@ -48,30 +44,34 @@ impl Build<'_> {
             }
         }
         if let Some(rating) = table.table("hoek_brown") {
-            return RockStrength::HoekBrown(HoekBrown {
+            let rating = RockStrength::HoekBrown(HoekBrown {
                 gsi: rating.uncertain("gsi"),
                 mi: rating.uncertain("mi"),
                 disturbance: rating.number("disturbance"),
                 uniaxial_strength_pa: rating.uncertain("uniaxial_strength_mpa"),
             });
+            return (rating, None);
         }
         if let Some(file) = table.text_if("lab") {
-            return RockStrength::Lab(file.to_owned());
+            // Beside another source the file would only add findings about strengths that are not used.
+            let lab = if sources.len() == 1 { self.lab(name, table) } else { None };
+            return (lab.as_ref().map_or_else(|| RockStrength::Lab(file.to_owned()), |lab| lab.strength.clone()), lab);
         }
         if !TYPED.iter().all(|key| table.has(key)) {
-            return RockStrength::None;
+            return (RockStrength::None, None);
         }
-        RockStrength::Typed(Cohesive {
+        let typed = RockStrength::Typed(Cohesive {
             tensile_strength_pa: table.uncertain(TYPED[0]),
             cohesion_pa: table.uncertain(TYPED[1]),
             friction_angle_rad: table.uncertain(TYPED[2]),
             cohesion_friction_correlation: table.table("correlation").map_or(0.0, |table| table.number("cohesion_friction")),
-        })
+        });
+        (typed, None)
     }
 
-    fn strength_basis(&mut self, table: &Tab, strength: &RockStrength) -> StrengthBasis {
+    fn strength_basis(&mut self, table: &Tab) -> StrengthBasis {
         let some_typed = TYPED.iter().any(|key| table.has(key));
-        let needed = some_typed || matches!(strength, RockStrength::Lab(_));
+        let needed = some_typed || table.has("lab");
         match table.text_if("strength_basis") {
             Some("intact") => StrengthBasis::Intact,
             Some("back-analysed") => StrengthBasis::BackAnalysed,
@@ -145,4 +145,13 @@ impl Build<'_> {
 
 pub(super) fn discontinuity_survey(table: &Tab) -> DiscontinuitySurvey {
     DiscontinuitySurvey { none_seen_by: table.text("none_seen_by").to_owned(), date: table.date("date"), reach_m: table.number("reach_m") }
+}
+
+fn tested_state(word: &str) -> Option<TestedState> {
+    match word {
+        "dry" => Some(TestedState::Dry),
+        "natural" => Some(TestedState::Natural),
+        "saturated" => Some(TestedState::Saturated),
+        _ => None,
+    }
 }
