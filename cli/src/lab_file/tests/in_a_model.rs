@@ -12,17 +12,18 @@ fn model(source: &str) -> String {
             .iter()
             .any(|key| line.trim_start().starts_with(key))
     };
-    let mut replaced = false;
+    let (mut replaced, mut left) = (false, false);
     let mut out = String::new();
     for line in starter.lines() {
-        if is_strength(line) && !replaced {
-            replaced = true;
-            out.push_str(source);
-            out.push('\n');
-        } else if !is_strength(line) {
-            out.push_str(line);
-            out.push('\n');
-        }
+        left |= replaced && line.starts_with('[');
+        let text = match (left || !is_strength(line), replaced) {
+            (true, _) => line,
+            (false, true) => continue,
+            (false, false) => source,
+        };
+        replaced |= text == source;
+        out.push_str(text);
+        out.push('\n');
     }
     out
 }
