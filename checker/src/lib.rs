@@ -6,4 +6,5 @@ pub mod lab;
 pub mod model;
 pub mod outcome;
 pub mod outlook;
+pub mod section;
 pub mod strength;
