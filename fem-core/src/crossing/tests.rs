@@ -43,3 +43,10 @@ fn a_segment_along_a_contact_takes_the_side_it_is_told() {
         assert!(found.iter().all(|p| p.element.is_some_and(take)));
     }
 }
+
+#[test]
+fn a_parabola_is_crossed_where_its_equation_says() {
+    // Side (0,0) to (2,0) with its middle at (1,1): y = 4s(1−s), equal to 0.75 at s = 1/4 and 3/4.
+    let roots = crossings(&[[0.0, 0.0], [2.0, 0.0], [1.0, 1.0]], [-5.0, 0.75], [3.0, 0.0]);
+    assert!(roots.len() == 2 && (roots[0] - 0.25).abs() < 1e-15 && (roots[1] - 0.75).abs() < 1e-15, "{roots:?}");
+}

@@ -61,3 +61,42 @@ fn thin_groups_fall_back_to_fewer_terms() {
         assert!((0..3).all(|k| (got[k] - want[k]).abs() < 1e-9), "element {element}: {got:?} for {want:?}");
     }
 }
+
+#[test]
+fn patches_are_not_widened_past_a_re_entrant_corner() {
+    // Stress only in the elements that touch the corner of an L: nodes outside these elements must not see it.
+    let mesh = grid(Grid { n_u: 8, n_v: 8, curved: false }, &|uv| uv, &|i, j| i < 4 || 4 <= j);
+    let singular = singular_nodes(&mesh, SINGULAR_ANGLE_RAD);
+    assert_eq!(singular.len(), 1);
+    let touches: Vec<bool> = mesh.triangles.iter().map(|t| t[..3].contains(&singular[0])).collect();
+    let samples: Vec<[f64; 3]> = touches.iter().flat_map(|&t| [[if t { 1.0 } else { 0.0 }; 3]; 3]).collect();
+    let recovery = Recovery::new(&mesh, &RecoveryParams { groups: &mesh.regions, singular_nodes: &singular });
+    let values = recovery.apply(&samples);
+    let beside: Vec<u32> = (0..touches.len()).filter(|&e| touches[e]).flat_map(|e| recovery.layout().element_nodes[e]).collect();
+    for ids in &recovery.layout().element_nodes {
+        for id in ids[..3].iter().filter(|id| !beside.contains(id)) {
+            assert!(values[*id as usize][0].abs() < 1e-12, "recovered node {id}");
+        }
+    }
+}
+
+#[test]
+fn a_constant_difference_has_the_error_of_its_energy() {
+    // η² = area · s : D⁻¹ s by hand, when recovered and raw stress differ by the constant s and u = 0.
+    let mesh = rectangle(Grid { n_u: 3, n_v: 2, curved: false }, [0.0, 0.0], [3.0, 2.0], 0.2);
+    let rock = [Elastic::new(2e9, 0.3).unwrap()];
+    let recovery = Recovery::new(&mesh, &RecoveryParams { groups: &mesh.regions, singular_nodes: &[] });
+    let s = [1e3, -2e3, 3e3];
+    let (u, recovered) = (vec![0.0; 2 * mesh.points_m.len()], vec![s; recovery.layout().n]);
+    let field = crate::error::Field { displacements_m: &u, recovered_pa: &recovered };
+    let errors = crate::error::energy_errors(&mesh, &rock, recovery.layout(), field);
+    // (1+ν)/E [(1−ν)(xx² + yy²) − 2ν xx yy + 2 xy²]
+    let density = 1.3 / 2e9 * (0.7 * 5e6 + 0.6 * 2e6 + 18e6);
+    for (element, eta) in errors.iter().enumerate() {
+        assert!((eta * eta / (mesh.area_m2(element) * density) - 1.0).abs() < 1e-12);
+    }
+    let relative = crate::error::relative_energy_error(&errors, 0.0);
+    assert!((relative - 1.0).abs() < 1e-12, "nothing but error");
+    let products = crate::error::dual_weighted(&errors, &errors);
+    assert!((products.iter().sum::<f64>() / (6.0 * density) - 1.0).abs() < 1e-12);
+}

@@ -70,3 +70,16 @@ fn moved_supports_strain_the_body_as_told() {
         assert!((u[0] - 1e-3 * p[0]).abs() < 1e-15 && u[1].abs() < 1e-15);
     }
 }
+
+#[test]
+fn strain_energy_is_half_the_work_of_the_loads() {
+    // Source: Clapeyron's theorem.
+    let (mesh, supports) = block();
+    let rock = [Elastic::new(1e9, 0.2).unwrap()];
+    let load = assembly::body_force(&mesh, &|_, p| [2e3 * p[1], -25e3]);
+    let u =
+        Problem { mesh: &mesh, materials: &rock, supports: &supports }.factor().unwrap().solve(&[&load]).unwrap().remove(0).displacements_m;
+    let energy: f64 = crate::stress::strain_energies_j_per_m(&mesh, &rock, &u).iter().sum();
+    let work: f64 = load.iter().zip(&u).map(|(f, u)| 0.5 * f * u).sum();
+    assert!((energy / work - 1.0).abs() < 1e-10, "{energy} for {work}");
+}
