@@ -94,17 +94,35 @@ pub fn read(path: &Path) -> Result<LoadedModel, Failure> {
 /// # Errors
 /// As [`read`].
 pub fn from_text(text: String, name: &str, folder: &Path) -> Result<LoadedModel, Failure> {
+    let Reading { model, findings, places, extra_files, unreadable } = read_all(&text, name, folder);
+    match model {
+        Some(model) if findings.n_errors() == 0 => {
+            let sha256 = hexadecimal(&Sha256::digest(text.as_bytes()));
+            Ok(LoadedModel { model, warnings: findings, text, sha256, file_name: name.to_owned(), extra_files, places })
+        }
+        _ => Err(Failure { findings, unreadable }),
+    }
+}
+
+/// What one pass over a text gives; with errors among the findings the model holds stand-ins.
+struct Reading {
+    model: Option<Model>,
+    findings: Findings,
+    places: Places,
+    extra_files: Vec<ExtraFile>,
+    unreadable: bool,
+}
+
+fn read_all(text: &str, name: &str, folder: &Path) -> Reading {
     let mut collector = Collector::default();
-    collector.sources.push(Source { name: name.to_owned(), text: text.clone() });
+    collector.sources.push(Source { name: name.to_owned(), text: text.to_owned() });
     if text.trim().is_empty() {
         let diagnostic = Diagnostic::error("file.empty", "", "the model file is empty").hint("`brinkline new FILE` writes a starter model");
         collector.add_at(diagnostic, 0, 0..0);
-        let (findings, _) = collector.finish();
-        return Err(Failure { findings, unreadable: false });
+        return without_model(collector);
     }
-    let Some(readable) = syntax::check(&text, &mut collector) else {
-        let (findings, _) = collector.finish();
-        return Err(Failure { findings, unreadable: false });
+    let Some(readable) = syntax::check(text, &mut collector) else {
+        return without_model(collector);
     };
     let (table, _) = DeTable::parse_recoverable(&readable);
     let mut walk = Walk { collector: &mut collector, defaults_used: Vec::new() };
@@ -112,18 +130,18 @@ pub fn from_text(text: String, name: &str, folder: &Path) -> Result<LoadedModel,
     let defaults_used = walk.defaults_used;
     let mut build = Build { collector: &mut collector, folder, defaults_used, extra_files: Vec::new(), unreadable: false };
     let mut model = build.model(&file);
-    let (extra_files, unreadable) = (build.extra_files, build.unreadable);
-    model.defaults_used = with_effect(build.defaults_used, &model);
+    let Build { defaults_used, extra_files, unreadable, .. } = build;
+    model.defaults_used = with_effect(defaults_used, &model);
     for diagnostic in checker::model::check(&model) {
         collector.add(diagnostic);
     }
-    let failed = collector.n_errors() > 0;
     let (findings, places) = collector.finish();
-    if failed {
-        return Err(Failure { findings, unreadable });
-    }
-    let sha256 = hexadecimal(&Sha256::digest(text.as_bytes()));
-    Ok(LoadedModel { model, warnings: findings, text, sha256, file_name: name.to_owned(), extra_files, places })
+    Reading { model: Some(model), findings, places, extra_files, unreadable }
+}
+
+fn without_model(collector: Collector) -> Reading {
+    let (findings, places) = collector.finish();
+    Reading { model: None, findings, places, extra_files: Vec::new(), unreadable: false }
 }
 
 /// The defaults that matter: those about water only where there is water, those about surcharges only where there are any.
@@ -152,3 +170,6 @@ fn hexadecimal(bytes: &[u8]) -> String {
     const DIGITS: &[u8; 16] = b"0123456789abcdef";
     bytes.iter().flat_map(|byte| [byte >> 4, byte & 15]).map(|half| char::from(DIGITS[usize::from(half)])).collect()
 }
+
+#[cfg(test)]
+mod tests;

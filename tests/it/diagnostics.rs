@@ -83,14 +83,14 @@ fn failure_of(path: &Path) -> Failure {
 fn every_faulty_model_says_where_and_what() {
     let files = faulty_models();
     assert!(files.len() >= 40, "{}", files.len());
-    let mut wrong = String::new();
+    let mut wrong = Vec::new();
     for path in files {
         let text = std::fs::read_to_string(&path).unwrap();
         let name = path.file_name().unwrap().to_str().unwrap();
         let failure = failure_of(&path);
         let exit: u8 = text.lines().next().and_then(|line| line.strip_prefix("# EXIT ")).unwrap().parse().unwrap();
         if failure.exit_code() != exit {
-            wrong += &format!("{name}: exit {} instead of {exit}\n", failure.exit_code());
+            wrong.push(format!("{name}: exit {} instead of {exit}", failure.exit_code()));
         }
         let promised = promised(&text, name);
         let found = found(&failure.findings);
@@ -99,22 +99,22 @@ fn every_faulty_model_says_where_and_what() {
                 one.file == fault.file && one.line == fault.line && one.code == fault.code && one.words.contains(&fault.words)
             };
             if !found.iter().any(|one| hit(&one)) {
-                wrong += &format!("{name}: not found: {fault:?}\n");
+                wrong.push(format!("{name}: not found: {fault:?}"));
             }
         }
         for one in &found {
             let hit = |fault: &&Fault| one.file == fault.file && one.line == fault.line && one.code == fault.code;
             // What is not built yet answers besides, until it is built.
             if one.code != "key.not-available" && !promised.iter().any(|fault| hit(&fault)) {
-                wrong += &format!("{name}: found besides: {one:?}\n");
+                wrong.push(format!("{name}: found besides: {one:?}"));
             }
         }
         let without_remedy = failure.findings.list.iter().find(|one| one.diagnostic.hint.is_none() && one.diagnostic.code != "file.syntax");
         if let Some(one) = without_remedy {
-            wrong += &format!("{name}: no remedy: {:?}\n", one.diagnostic);
+            wrong.push(format!("{name}: no remedy: {:?}", one.diagnostic));
         }
     }
-    assert!(wrong.is_empty(), "\n{wrong}");
+    assert!(wrong.is_empty(), "\n{}", wrong.join("\n"));
 }
 
 #[test]
@@ -222,6 +222,66 @@ fn text_of_the_file_cannot_write_to_the_terminal() {
     }
 }
 
+/// Mangled models, the same ones in every run: whatever comes out, it is findings or a model, never a panic.
+#[test]
+fn mangled_models_never_panic() {
+    let full = std::fs::read_to_string(folder().join("../full/full.toml")).unwrap();
+    let pieces = [
+        "[",
+        "]",
+        "{",
+        "}",
+        "\"",
+        "=",
+        "\n",
+        ",",
+        "-1",
+        "1e308",
+        "nan",
+        "'''",
+        "#",
+        ".",
+        "[[layers]]\n",
+        "\u{feff}",
+        "é",
+        "{ mean = 1, cov = 9 }",
+        "[]",
+    ];
+    let mut state = 42_u64;
+    let mut random = |below: usize| {
+        // Constants of a 64-bit linear congruential generator (Knuth, MMIX).
+        state = state.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+        (state >> 33) as usize % below.max(1)
+    };
+    for text in [full.as_str(), brinkline::commands::STARTER] {
+        for _ in 0..1000 {
+            let mut mangled: Vec<char> = text.chars().collect();
+            for _ in 0..=random(4) {
+                let at = random(mangled.len());
+                let n_cut = [1 + random(30), 0, 1][random(3)];
+                let piece = if n_cut > 1 { "" } else { pieces[random(pieces.len())] };
+                let end = (at + n_cut).min(mangled.len());
+                mangled.splice(at..end, piece.chars()).for_each(drop);
+            }
+            let mangled: String = mangled.into_iter().collect();
+            if let Err(failure) = model_file::from_text(mangled, "mangled.toml", &folder().join("../full")) {
+                assert!(failure.findings.n_errors() > 0);
+                assert!(!render(&failure.findings, DiagnosticsForm::Human, true).is_empty());
+            }
+        }
+    }
+}
+
+/// A point cloud is no section.
+#[test]
+fn a_surface_of_too_many_points_is_refused() {
+    let rows: Vec<String> = (0..60_000).map(|i| format!("{},{}", f64::from(i) * 0.001, f64::from(i) * 0.0005)).collect();
+    write("cloud.csv", format!("x_m,z_m\n{}\n", rows.join("\n")).as_bytes());
+    let model = std::fs::read_to_string(folder().join("csv-empty.toml")).unwrap();
+    let failure = failure_of(&write("cloud.toml", model.replace("csv-empty.csv", "cloud.csv").as_bytes()));
+    assert!(failure.findings.list.iter().any(|one| one.diagnostic.code == "surface.many-points"), "{:?}", failure.findings.list);
+}
+
 /// All demo models and the starter are read without an error.
 #[test]
 fn models_that_are_shipped_are_read() {
@@ -238,4 +298,70 @@ fn models_that_are_shipped_are_read() {
             panic!("{}", render(&failure.findings, DiagnosticsForm::Human, false));
         }
     }
+}
+
+/// The page holds the key reference of the table of keys; `BRINKLINE_UPDATE_DOCS=1` rewrites it.
+#[test]
+fn the_page_about_the_model_file_follows_the_table_of_keys() {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("../docs/model-file.md");
+    let page = std::fs::read_to_string(&path).unwrap();
+    let (start, end) = ("<!-- key reference -->\n", "<!-- end of key reference -->\n");
+    let (head, rest) = page.split_once(start).unwrap();
+    let (_, tail) = rest.split_once(end).unwrap();
+    let fresh = format!("{head}{start}\n{}\n{end}{tail}", model_file::key_reference());
+    if std::env::var_os("BRINKLINE_UPDATE_DOCS").is_some() {
+        std::fs::write(&path, &fresh).unwrap();
+    }
+    assert!(fresh == std::fs::read_to_string(&path).unwrap(), "run the test once with BRINKLINE_UPDATE_DOCS=1");
+}
+
+/// Every code that the reader and the checks of the model use stands in the page, and no other.
+#[test]
+fn the_page_about_the_model_file_lists_every_code() {
+    let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("..");
+    let page = std::fs::read_to_string(root.join("docs/model-file.md")).unwrap();
+    let listed: Vec<&str> = page
+        .lines()
+        .filter_map(|line| line.strip_prefix("| `")?.split_once("` |"))
+        .map(|(code, _)| code)
+        .filter(|code| code.contains('.'))
+        .collect();
+    let mut used = std::collections::BTreeSet::new();
+    let mut open = vec![
+        root.join("cli/src/model_file.rs"),
+        root.join("cli/src/model_file"),
+        root.join("cli/src/survey_csv.rs"),
+        root.join("checker/src/model"),
+    ];
+    while let Some(path) = open.pop() {
+        if path.is_dir() {
+            open.extend(std::fs::read_dir(path).unwrap().map(|entry| entry.unwrap().path()));
+        } else if !path.ends_with("tests.rs") {
+            used.extend(codes(&std::fs::read_to_string(path).unwrap()));
+        }
+    }
+    assert!(used.len() > 50, "{}", used.len());
+    let missing: Vec<&String> = used.iter().filter(|code| !listed.contains(&code.as_str())).collect();
+    assert!(missing.is_empty(), "not in docs/model-file.md: {missing:?}");
+    let is_ours = |code: &&&str| used.iter().any(|used| used.split('.').next() == code.split('.').next());
+    let stale: Vec<&&str> =
+        listed.iter().filter(is_ours).filter(|code| !used.contains(**code)).filter(|code| !code.contains(['[', '*'])).collect();
+    assert!(stale.is_empty(), "listed but not used: {stale:?}");
+}
+
+/// Texts in quotes of the form `word.words-with-dashes` that follow `error(`, `warning(` or `code:`.
+fn codes(source: &str) -> Vec<String> {
+    let mut codes = Vec::new();
+    for mark in ["Diagnostic::error(", "Diagnostic::warning(", "code: ", "wrong(", "fault("] {
+        for (i, _) in source.match_indices(mark) {
+            let rest = source[i + mark.len()..].trim_start();
+            if let Some((code, _)) = rest.strip_prefix('"').and_then(|rest| rest.split_once('"')) {
+                let is_code = code.split_once('.').is_some_and(|(area, word)| !area.is_empty() && !word.is_empty());
+                if is_code && code.bytes().all(|b| b.is_ascii_lowercase() || b == b'.' || b == b'-') {
+                    codes.push(code.to_owned());
+                }
+            }
+        }
+    }
+    codes
 }

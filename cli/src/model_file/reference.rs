@@ -90,7 +90,7 @@ fn holds(kind: &'static Kind) -> String {
 fn left_out(field: &'static Field) -> String {
     match field.need {
         Need::Required => "**required**".into(),
-        Need::Optional => "nothing is assumed".into(),
+        Need::Optional => "optional".into(),
         Need::Default(preset) => format!("DEFAULT `{}`", preset_json(preset)),
         Need::Neutral(preset) => format!("`{}`", preset_json(preset)),
         Need::Derived(how) => format!("DEFAULT {how}"),

@@ -9,11 +9,8 @@ use serde_json::{Map, Value, json};
 pub fn json_schema() -> Value {
     let mut schema = object(&MODEL, "");
     let mut uncertain = object(&UNCERTAIN, "");
-    uncertain["anyOf"] = json!([
-        { "required": ["mean", "cov"] },
-        { "required": ["mean", "standard_deviation"] },
-        { "required": ["min", "max"] },
-    ]);
+    let forms = json!([{ "required": ["mean", "cov"] }, { "required": ["mean", "standard_deviation"] }, { "required": ["min", "max"] }]);
+    uncertain.insert("anyOf".into(), forms);
     schema.insert("$defs".into(), json!({ "uncertain": Value::Object(uncertain) }));
     let mut whole = Map::new();
     whole.insert("$schema".into(), "https://json-schema.org/draft/2020-12/schema".into());
