@@ -138,7 +138,7 @@ fn point(row: &[String], columns: Columns) -> Result<SurfacePoint, Fault> {
         return Err(Fault { code: "csv.row", field: None, message, hint: "save the file with commas and decimal points" });
     }
     if row.len() < least || (row.len() > most && row[most..].iter().any(|field| field.parse::<f64>().is_ok()) && columns.how.is_none()) {
-        let message = format!("there are {} fields", row.len());
+        let message = if row.len() == 1 { "there is only 1 field".to_owned() } else { format!("there are {} fields", row.len()) };
         let hint = if row.len() > most { "are these decimal commas? Write decimal points" } else { "every row needs x_m and z_m" };
         return Err(Fault { code: "csv.row", field: None, message, hint });
     }

@@ -1,5 +1,5 @@
 //! The JSON Schema (draft 2020-12) of the model file, from the table of keys.
-use super::keys::MODEL;
+use super::keys::{LARGEST_COORDINATE_M, MODEL};
 use super::kinds::{Field, Kind, Limits, Need, Preset, Quantity, Shape};
 use super::not_yet;
 use super::walk::UNCERTAIN;
@@ -110,7 +110,8 @@ fn kind(kind: &'static Kind, pattern: &str) -> Map<String, Value> {
 }
 
 fn pair() -> Value {
-    json!({ "type": "array", "items": { "type": "number" }, "minItems": 2, "maxItems": 2 })
+    let coordinate = json!({ "type": "number", "minimum": -LARGEST_COORDINATE_M, "maximum": LARGEST_COORDINATE_M });
+    json!({ "type": "array", "items": coordinate, "minItems": 2, "maxItems": 2 })
 }
 
 fn number(quantity: &Quantity) -> Map<String, Value> {

@@ -1,5 +1,5 @@
 //! What acts and how the hollow grows: situations, surcharges, undercut, outlook.
-use super::super::{DeepeningRate, Groundwater, Model, SeaLevel, Situation};
+use super::super::{DeepeningRate, Groundwater, Headline, Model, SeaLevel, Situation};
 use super::surface::LEAST_HEIGHT_M;
 use super::{x_range_m, z_range_m};
 use crate::diagnostic::{Diagnostic, nth};
@@ -24,6 +24,7 @@ pub(super) fn check(model: &Model, findings: &mut Vec<Diagnostic>) {
         }
     }
     undercut(model, findings);
+    factors(model, findings);
     outlook(model, findings);
 }
 
@@ -124,6 +125,15 @@ fn extent(model: &Model, [x_low, x_high]: [f64; 2], [z_low, _]: [f64; 2], findin
         let message = format!("the seaward side, x = {seaward} m, is not seaward of the landward one, x = {landward} m");
         findings
             .push(Diagnostic::error("extent.inside", "extent.seaward_x_m", message).hint("x grows landward").also("extent.landward_x_m"));
+    }
+}
+
+/// The set of EN 1997-1:2004 annex A goes with characteristic values, not with means.
+fn factors(model: &Model, findings: &mut Vec<Diagnostic>) {
+    if model.checks.partial_factors.en_1997_m2 && model.checks.headline == Headline::BestEstimate {
+        let message = "the partial factors of EN 1997-1 go with cautious values, but the headline is the best estimate";
+        let diagnostic = Diagnostic::warning("checks.partial-factors", "checks.partial_factors", message);
+        findings.push(diagnostic.hint("write headline = \"cautious\"").also("checks.headline"));
     }
 }
 

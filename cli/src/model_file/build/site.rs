@@ -131,6 +131,13 @@ impl Build<'_> {
         {
             self.default_used("undercut.back = \"round\"");
         }
+        if let (Some(table), None) = (table, start_shape)
+            && table.has("back")
+        {
+            let message = "back has no effect without floor_level_m and roof_level_m";
+            let hint = "add both levels where the survey shows no undercut; otherwise leave back out";
+            self.collector.add(Diagnostic::warning("key.no-effect", table.at("back"), message).hint(hint));
+        }
         Undercut {
             setting: match word("setting") {
                 "cave" => Setting::Cave,

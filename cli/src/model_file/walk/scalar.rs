@@ -255,7 +255,7 @@ fn limit_hint(number: f64, quantity: &Quantity) -> String {
     if quantity.unit == Unit::Meter && number.abs() > LARGEST_COORDINATE_M {
         return "coordinates count from a fixed mark near the cliff; grid coordinates belong in [location]".into();
     }
-    match quantity.suspicions.iter().find(|range| range.from <= number && number < range.to) {
+    match quantity.suspicions.iter().find(|range| number > 0.0 && range.from <= number && number < range.to) {
         Some(suspicion) => format!("likely {}", suspicion.likely),
         None => "check the value and its unit, which is in the name of the key".into(),
     }
