@@ -1,4 +1,4 @@
-"""Paired rounds of our bench and the peers on one mesh; prints ratios of medians and writes them into docs/performance.md.
+"""Paired rounds of our bench and the peers on one mesh, and our bench over sizes; writes the figures into docs/performance.md.
 
 Every run is a process of its own, timed inside from mesh arrays in memory to displacements in memory. Within a round the order is ours,
 peer, ours, peer ..: each peer is compared with the mean of ours just before and just after it, so that other work on the machine hits both.
@@ -7,6 +7,7 @@ import argparse
 import datetime
 import importlib.metadata
 import json
+import math
 import os
 import pathlib
 import platform
@@ -17,7 +18,7 @@ import tempfile
 
 HERE = pathlib.Path(__file__).resolve().parent
 PAGE = HERE.parent.parent / "docs" / "performance.md"
-BEGIN, END = "<!-- solver: written by tests/peers/compare.py -->", "<!-- solver: end -->"
+SIZES = (2_000, 50_000, 400_000, 1_000_000)
 PEERS = {
     "superlu": "scikit-fem + SuperLU, as `spsolve` comes",
     "superlu-mmd": "scikit-fem + SuperLU, symmetric mode and minimum degree",
@@ -73,10 +74,9 @@ def measure(arguments, folder):
 
 
 def report(ours, runs):
-    load = ", ".join(f"{x:.1f}" for x in os.getloadavg())
     versions = ", ".join(f"{name} {importlib.metadata.version(name)}" for name in ("numpy", "scipy", "scikit-fem"))
     lines = [
-        f"{ours[0]['unknowns']:,} unknowns. Measured {datetime.date.today().isoformat()} on {machine()}; load of the machine at the end {load}; {versions}.",
+        f"{ours[0]['unknowns']:,} unknowns. {when_and_where()}; {versions}.",
         "",
         "| | median s | ratio of medians | paired ratio, median | processor time, paired ratio | factor and solve only, paired ratio | peak kB an unknown | largest difference | runs |",
         "|---|---|---|---|---|---|---|---|---|",
@@ -98,19 +98,45 @@ def report(ours, runs):
     return "\n".join(lines)
 
 
+def when_and_where():
+    load = f"{os.getloadavg()[0]:.1f}"
+    return f"Measured {datetime.date.today().isoformat()} on {machine()}; processes wanting to run at the end: {load}"
+
+
+def sizes_report(bench, folder):
+    """One row a size: medians of three runs in fresh memory, growth from the row above."""
+    lines = ["| unknowns | s | processor s | grows as n to the | peak kB an unknown |", "|---|---|---|---|---|"]
+    before = None
+    for size in SIZES:
+        runs = [last_json([bench, "--once", folder / "solution.txt", str(size)]) for _ in range(3)]
+        n = runs[0]["unknowns"]
+        seconds, processor, peak = (median([run[key] for run in runs]) for key in ("seconds", "processor_seconds", "peak_bytes"))
+        growth = f"{math.log(processor / before[1]) / math.log(n / before[0]):.2f}" if before and before[0] > 10_000 else ""
+        lines.append(f"| {n:,} | {seconds:.3f} | {processor:.3f} | {growth} | {peak / n / 1e3:.2f} |")
+        before = (n, processor)
+    return "\n".join([f"{when_and_where()}. Growth is that of processor time.", "", *lines])
+
+
+def write(section, table):
+    """Replaces the text between the marks of a section of the page."""
+    print(table)
+    begin, end = f"<!-- {section}: written by tests/peers/compare.py -->", f"<!-- {section}: end -->"
+    before, rest = PAGE.read_text().split(begin)
+    PAGE.write_text(f"{before}{begin}\n{table}\n{end}{rest.split(end)[1]}")
+
+
 def main():
     parser = argparse.ArgumentParser(description=__doc__)
     parser.add_argument("--bench", required=True, help="the built bench `solver`")
     parser.add_argument("--unknowns", type=int, default=400_000)
-    parser.add_argument("--rounds", type=int, default=5)
+    parser.add_argument("--rounds", type=int, default=5, help="0 leaves the peers out")
     parser.add_argument("--slow-rounds", type=int, default=2, help="rounds of the peer that takes longest")
     arguments = parser.parse_args()
-    with tempfile.TemporaryDirectory() as folder:
-        table = report(*measure(arguments, pathlib.Path(folder)))
-    print(table)
-    text = PAGE.read_text()
-    before, rest = text.split(BEGIN)
-    PAGE.write_text(f"{before}{BEGIN}\n{table}\n{END}{rest.split(END)[1]}")
+    with tempfile.TemporaryDirectory() as name:
+        folder = pathlib.Path(name)
+        write("sizes", sizes_report(arguments.bench, folder))
+        if arguments.rounds > 0:
+            write("solver", report(*measure(arguments, folder)))
 
 
 main()

@@ -1,5 +1,6 @@
 #!/usr/bin/env bash
-# Paired comparison of the solver with scikit-fem on the same mesh. Usage: run.sh [ROUNDS] [UNKNOWNS]; results go into docs/performance.md.
+# Sizes of our bench, then a paired comparison with scikit-fem on the same mesh. Usage: run.sh [ROUNDS] [UNKNOWNS], no peers with 0
+# rounds; results go into docs/performance.md.
 # Needs Python 3, a C compiler and, for CHOLMOD, the SuiteSparse headers (Debian: libsuitesparse-dev) with a fast BLAS
 # (libopenblas0-pthread). Without CHOLMOD it says so and compares with SuperLU alone.
 set -euo pipefail
