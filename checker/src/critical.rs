@@ -67,12 +67,15 @@ pub fn first_crossing(series: &[Point], from_m: f64) -> Option<Crossing> {
     Some(Crossing { depth_m, error_m: mesh_m + curvature_m, under_m: p0.depth_m, over_m: p1.depth_m })
 }
 
-/// How far the parabola through three points moves the root of the chord through the first two, to first order.
+/// Margin on the shift of the root, which is taken to first order only.
+const FIRST_ORDER_MARGIN: f64 = 1.5;
+
+/// How far the parabola through three points moves the root of the chord through the first two.
 fn parabola_shift(p0: Point, p1: Point, p2: Point, root_m: f64) -> f64 {
     let slope = (p1.excess - p0.excess) / (p1.depth_m - p0.depth_m);
     let slope_beyond = (p2.excess - p1.excess) / (p2.depth_m - p1.depth_m);
     let second = (slope_beyond - slope) / (p2.depth_m - p0.depth_m);
-    (second * (root_m - p0.depth_m) * (root_m - p1.depth_m) / slope).abs()
+    FIRST_ORDER_MARGIN * (second * (root_m - p0.depth_m) * (root_m - p1.depth_m) / slope).abs()
 }
 
 /// Stretches of depths below `to_m` at which the check is over its limit, ends by interpolation, `[from, to]` in m.

@@ -8,9 +8,9 @@ mod line;
 mod place;
 mod states;
 
-pub use evaluate::{Evaluation, Found, evaluate};
+pub use evaluate::{Evaluation, Found, RockEnds, evaluate, place_utilization, rock_ends};
 pub use line::{LineValue, Piece, SectionForces};
-pub use place::PlaceValue;
+pub use place::{Pair, PlaceValue};
 pub use states::{InputCase, K0Case, k0_cases};
 
 /// A check, by its published id.
@@ -32,6 +32,11 @@ impl CheckKind {
     /// All checks, in the order of the results.
     pub const ALL: [Self; 5] = [Self::CliffTopTension, Self::RoofTension, Self::LocalShear, Self::SectionBending, Self::SectionShear];
 
+    /// Whether the check is taken at a place of the stress field, not on a line.
+    pub fn is_local(self) -> bool {
+        matches!(self, Self::CliffTopTension | Self::RoofTension | Self::LocalShear)
+    }
+
     /// Published id.
     pub fn id(self) -> &'static str {
         match self {
@@ -44,13 +49,5 @@ impl CheckKind {
     }
 }
 
-/// Strength values of one rock as used in a check.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct RockLimits {
-    /// Tensile strength, Pa.
-    pub tensile_strength_pa: f64,
-    /// Effective cohesion, Pa.
-    pub cohesion_pa: f64,
-    /// Tangent of the effective friction angle.
-    pub tan_friction: f64,
-}
+#[cfg(test)]
+mod tests;

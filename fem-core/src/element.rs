@@ -140,7 +140,7 @@ pub fn internal_forces(points_m: &[[f64; 2]; 6], moduli: &Moduli, displacements_
 }
 
 /// Adds `weight · Bᵀ σ` to node forces.
-pub(crate) fn add_stress_divergence(forces: &mut [[f64; 2]; 6], at: &Mapped, stress_pa: [f64; 3], weight_m2: f64) {
+pub fn add_stress_divergence(forces: &mut [[f64; 2]; 6], at: &Mapped, stress_pa: [f64; 3], weight_m2: f64) {
     let [xx, yy, xy] = stress_pa;
     for (f, g) in forces.iter_mut().zip(&at.gradients_per_m) {
         f[0] += weight_m2 * (g[0] * xx + g[1] * xy);

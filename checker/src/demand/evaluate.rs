@@ -1,12 +1,12 @@
 //! All checks at one depth: the worst place or line of every check in every situation for cautious and mean inputs.
 use super::line::{LineValue, SectionForces};
 use super::place::{Pair, PlaceValue, shear, tension};
-use super::states::{InputCase, K0Case, k0_cases};
-use super::{CheckKind, RockLimits};
+use super::states::{InputCase, K0Case};
+use super::CheckKind;
 use crate::analysis::load_cases::{CaseSet, State};
-use crate::model::{Model, Uncertain};
+use crate::model::{Model, Rock, Uncertain};
 use crate::outcome::CheckResult;
-use crate::strength::quantile;
+use crate::strength::{Strength, StrengthError, quantile};
 
 /// Chance below which the low end and above which the high end of an input lies.
 const LOW_END: f64 = 0.05;
@@ -19,9 +19,15 @@ pub struct Evaluation<'a> {
     /// Unit load cases of the tensors.
     pub cases: &'a CaseSet,
     /// Strengths of each rock for mean inputs; `None` = holds nothing.
-    pub best: &'a [Option<RockLimits>],
+    pub best: &'a [Option<Strength>],
     /// Strengths of each rock for cautious inputs.
-    pub cautious: &'a [Option<RockLimits>],
+    pub cautious: &'a [Option<Strength>],
+    /// Ends of each rock's uncertain weights and stress ratios.
+    pub ends: &'a [RockEnds],
+    /// Choices of the in-situ stress ratio, of which the worse counts.
+    pub k0_cases: &'a [K0Case],
+    /// Which inputs are evaluated.
+    pub inputs: &'a [InputCase],
     /// Undercut depth, m.
     pub depth_m: f64,
     /// Overhang thickness at this depth, m.
@@ -67,7 +73,7 @@ struct Worst {
 pub fn evaluate(e: &Evaluation<'_>) -> Vec<Found> {
     let mut found = Vec::new();
     for situation in 0..e.model.situations.len() {
-        for inputs in InputCase::ALL {
+        for &inputs in e.inputs {
             for kind in CheckKind::ALL {
                 found.extend(check(e, kind, situation, inputs));
             }
@@ -79,8 +85,7 @@ pub fn evaluate(e: &Evaluation<'_>) -> Vec<Found> {
 /// One check: the worse of the k0 cases.
 fn check(e: &Evaluation<'_>, kind: CheckKind, situation: usize, inputs: InputCase) -> Option<Found> {
     let mut best: Option<(Worst, State, &'static str)> = None;
-    let cases = k0_cases(e.model);
-    for case in &cases {
+    for case in e.k0_cases {
         let state = worst_state(e, kind, situation, inputs, case);
         let Some(worst) = worst_at(e, kind, &state, inputs) else { continue };
         if best.as_ref().is_none_or(|b| rank(&b.0.pair) < rank(&worst.pair)) {
@@ -104,12 +109,12 @@ fn worst_state(e: &Evaluation<'_>, kind: CheckKind, situation: usize, inputs: In
     }
     let mut chosen = mean.clone();
     let value = |state: &State| worst_at(e, kind, state, inputs).map_or(f64::NEG_INFINITY, |w| rank(&w.pair));
-    for (r, rock) in e.model.rocks.iter().enumerate() {
-        if let Some(ends) = ends(&rock.unit_weight_n_per_m3) {
+    for (r, rock) in e.ends.iter().enumerate() {
+        if let Some(ends) = rock.unit_weight_n_per_m3 {
             let with = |v: f64| State { unit_weight_n_per_m3: replaced(&mean.unit_weight_n_per_m3, r, v), ..mean.clone() };
             chosen.unit_weight_n_per_m3[r] = if value(&with(ends[0])) <= value(&with(ends[1])) { ends[1] } else { ends[0] };
         }
-        if let Some(ends) = rock.k0.as_ref().and_then(ends) {
+        if let Some(ends) = rock.k0 {
             let with = |v: f64| State { k0: replaced(&mean.k0, r, v), ..mean.clone() };
             chosen.k0[r] = if value(&with(ends[0])) <= value(&with(ends[1])) { ends[1] } else { ends[0] };
         }
@@ -125,12 +130,25 @@ fn replaced(values: &[f64], index: usize, value: f64) -> Vec<f64> {
     copy
 }
 
-/// The 5 % and 95 % ends of an uncertain input; none for a known one.
-fn ends(value: &Uncertain) -> Option<[f64; 2]> {
-    match value {
-        Uncertain::Exact(_) => None,
-        uncertain => Some([quantile(uncertain, LOW_END), quantile(uncertain, 1.0 - LOW_END)]),
-    }
+/// The 5 % and 95 % ends of a rock's uncertain unit weight and in-situ stress ratio; none for a known one.
+#[derive(Debug, Clone, Copy, Default, PartialEq)]
+pub struct RockEnds {
+    /// Unit weight, N/m3.
+    pub unit_weight_n_per_m3: Option<[f64; 2]>,
+    /// In-situ stress ratio.
+    pub k0: Option<[f64; 2]>,
+}
+
+/// Ends of a rock's uncertain inputs.
+///
+/// # Errors
+/// A distribution that cannot exist.
+pub fn rock_ends(rock: &Rock) -> Result<RockEnds, StrengthError> {
+    let ends = |value: &Uncertain| match value {
+        Uncertain::Exact(_) => Ok(None),
+        uncertain => Ok(Some([quantile(*uncertain, LOW_END)?, quantile(*uncertain, 1.0 - LOW_END)?])),
+    };
+    Ok(RockEnds { unit_weight_n_per_m3: ends(&rock.unit_weight_n_per_m3)?, k0: rock.k0.as_ref().map_or(Ok(None), ends)? })
 }
 
 /// Order of pairs from harmless to worst: signed ratio, infinite where nothing is left to carry.
@@ -155,7 +173,7 @@ fn worst_at(e: &Evaluation<'_>, kind: CheckKind, state: &State, inputs: InputCas
     }
 }
 
-fn limits<'a>(e: &Evaluation<'a>, inputs: InputCase) -> &'a [Option<RockLimits>] {
+fn limits<'a>(e: &Evaluation<'a>, inputs: InputCase) -> &'a [Option<Strength>] {
     match inputs {
         InputCase::Cautious => e.cautious,
         InputCase::BestEstimate => e.best,
@@ -208,7 +226,7 @@ fn line_pair(
     line: &LineValue,
     forces: &SectionForces,
     coefficients: &[f64],
-    limits: &[Option<RockLimits>],
+    limits: &[Option<Strength>],
 ) -> Option<(f64, usize, Pair)> {
     if kind == CheckKind::SectionBending {
         return line.bending(e.model, forces, limits);
@@ -301,4 +319,11 @@ fn closed_form_pa(e: &Evaluation<'_>, kind: CheckKind, state: &State) -> Option<
         CheckKind::SectionShear => Some(gamma * depth),
         CheckKind::RoofTension | CheckKind::LocalShear => None,
     }
+}
+
+/// Signed utilization of a place by a check for given tensors; what the mesh is adapted to.
+pub fn place_utilization(e: &Evaluation<'_>, found: &Found, tensor: [f64; 3]) -> Option<f64> {
+    let place = e.places.get(found.index)?;
+    let pair = place_pair(e, found.kind, place, &[tensor], (&[1.0], found.inputs))?;
+    if 0.0 < pair.capacity_pa { Some(pair.demand_pa / pair.capacity_pa) } else { None }
 }

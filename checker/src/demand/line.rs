@@ -1,8 +1,8 @@
 //! Section forces on a straight rupture line, and what they ask of the rock on it.
-use super::RockLimits;
 use super::place::Pair;
 use crate::analysis::load_cases::State;
 use crate::model::{Carries, Model};
+use crate::strength::Strength;
 
 /// A straight line from the hollow to the ground with the body that it cuts off.
 #[derive(Debug, Clone, PartialEq)]
@@ -99,7 +99,7 @@ impl LineValue {
     /// | int E'    int E' y   | |e0   |   |N|
     /// | int E' y  int E' y^2 | |kappa| = |M|        sigma(y) = E' (e0 + kappa y)
     /// ```
-    pub fn bending(&self, model: &Model, forces: &SectionForces, limits: &[Option<RockLimits>]) -> Option<(f64, usize, Pair)> {
+    pub fn bending(&self, model: &Model, forces: &SectionForces, limits: &[Option<Strength>]) -> Option<(f64, usize, Pair)> {
         let half = 0.5 * self.length_m();
         let stiffness = |layer: usize| {
             let rock = &model.rocks[model.layers[layer].rock];
@@ -140,7 +140,7 @@ impl LineValue {
     ///
     /// The normal force is that of equilibrium; the stress field only splits it among the layers:
     /// `N_i = N_i,field + (N - sum N_field) l_i / l`. A layer without strength, or pulled beyond its apex, adds nothing.
-    pub fn shear(&self, model: &Model, forces: &SectionForces, coefficients: &[f64], limits: &[Option<RockLimits>], coarse: bool) -> Pair {
+    pub fn shear(&self, model: &Model, forces: &SectionForces, coefficients: &[f64], limits: &[Option<Strength>], coarse: bool) -> Pair {
         let length = self.length_m();
         let field = |piece: &Piece| {
             let stress = if coarse { &piece.normal_coarse_pa } else { &piece.normal_pa };
@@ -151,7 +151,7 @@ impl LineValue {
         let strength = |piece: &Piece| {
             let limit = limits[model.layers[piece.layer].rock]?;
             let compression = -(field(piece) + correction);
-            Some((limit.cohesion_pa + compression * limit.tan_friction).max(0.0) * (piece.along_m[1] - piece.along_m[0]))
+            Some(limit.shear_strength_pa(compression) * (piece.along_m[1] - piece.along_m[0]))
         };
         let capacity: f64 = self.pieces.iter().filter_map(strength).sum();
         Pair { demand_pa: forces.shear_n_per_m / length, capacity_pa: capacity / length, beyond_apex: false }

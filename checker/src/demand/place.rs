@@ -1,6 +1,9 @@
 //! Averaged stress at one place: tension and local shear.
-use super::{CheckKind, RockLimits};
+use super::CheckKind;
 use crate::analysis::load_cases::superpose;
+use crate::strength::Strength;
+use fem_core::tensor::major;
+use crate::strength::mohr_coulomb::{LocalShear, local_shear};
 
 /// Mean effective stress tensors over one averaging segment or disc, `[xx, zz, xz]` in Pa for every unit load case.
 #[derive(Debug, Clone, PartialEq)]
@@ -46,41 +49,19 @@ impl Pair {
     }
 }
 
-/// Largest in-plane principal value of `[xx, zz, xz]`.
-///
-/// ```text
-/// s1 = (xx + zz)/2 + sqrt(((xx - zz)/2)^2 + xz^2)
-/// ```
-pub fn major(t: [f64; 3]) -> f64 {
-    0.5 * (t[0] + t[1]) + (0.5 * (t[0] - t[1])).hypot(t[2])
-}
-
 /// Tension at a place: largest principal value of the averaged tensor against the tensile strength.
-pub fn tension(coefficients: &[f64], tensors: &[[f64; 3]], limits: &RockLimits) -> Pair {
-    Pair { demand_pa: major(superpose(coefficients, tensors)), capacity_pa: limits.tensile_strength_pa, beyond_apex: false }
+pub(super) fn tension(coefficients: &[f64], tensors: &[[f64; 3]], strength: &Strength) -> Pair {
+    Pair { demand_pa: major(superpose(coefficients, tensors)), capacity_pa: strength.tensile_strength_pa, beyond_apex: false }
 }
 
-/// Local shear at a place by the factor on strength.
-///
-/// With `p` the compressive mean, `R` the radius of Mohr's circle of the averaged tensor and `t = tan phi'`:
-///
-/// ```text
-/// F       = sqrt(((c + p t) / R)^2 - t^2)     if c + p t > t R, else beyond the apex
-/// phi_m   = atan(t / F)
-/// demand  = R cos phi_m,   capacity = c + (p - R sin phi_m) t,   demand / capacity = 1 / F
-/// ```
-pub fn shear(coefficients: &[f64], tensors: &[[f64; 3]], limits: &RockLimits) -> Pair {
-    let s = superpose(coefficients, tensors);
-    let (c, t) = (limits.cohesion_pa, limits.tan_friction);
-    let p = -0.5 * (s[0] + s[1]);
-    let radius = (0.5 * (s[0] - s[1])).hypot(s[2]);
-    if radius <= f64::EPSILON * (p.abs() + c) {
-        return Pair { demand_pa: 0.0, capacity_pa: c + p * t, beyond_apex: c + p * t <= 0.0 };
+/// Local shear at a place: the averaged tensor by [`local_shear`].
+pub(super) fn shear(coefficients: &[f64], tensors: &[[f64; 3]], strength: &Strength) -> Pair {
+    let stress = superpose(coefficients, tensors);
+    match local_shear(stress, strength) {
+        LocalShear::Touches(touch) => Pair { demand_pa: touch.demand_pa, capacity_pa: touch.capacity_pa, beyond_apex: false },
+        LocalShear::BeyondApex => {
+            let radius = (0.5 * (stress[0] - stress[1])).hypot(stress[2]);
+            Pair { demand_pa: radius, capacity_pa: 0.0, beyond_apex: true }
+        }
     }
-    if c + p * t <= t * radius {
-        return Pair { demand_pa: radius, capacity_pa: 0.0, beyond_apex: true };
-    }
-    let factor = (((c + p * t) / radius).powi(2) - t * t).sqrt();
-    let phi_m = (t / factor).atan();
-    Pair { demand_pa: radius * phi_m.cos(), capacity_pa: c + (p - radius * phi_m.sin()) * t, beyond_apex: false }
 }

@@ -14,6 +14,14 @@ pub(crate) fn load(path: &Path, form: DiagnosticsForm) -> Result<LoadedModel, Ex
     match model_file::read(path) {
         Ok(loaded) => {
             show(&loaded.warnings, form);
+            // what only the section or the strengths show
+            match checker::assess::prepare(&loaded.model) {
+                Ok(prepared) => show(&loaded.locate(&prepared.warnings), form),
+                Err(faults) => {
+                    show(&loaded.locate(&faults), form);
+                    return Err(Exit::ModelWrong);
+                }
+            }
             Ok(loaded)
         }
         Err(failure) => {
