@@ -11,7 +11,6 @@ pub mod lab;
 pub mod model;
 pub mod outcome;
 pub mod outlook;
-pub mod section;
 pub mod strength;
 
 pub mod analysis;

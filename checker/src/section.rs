@@ -17,6 +17,8 @@ mod site;
 mod start;
 mod strata;
 mod undercut;
+mod standin;
+pub use standin::{FreeBody, Place, PlaceKind, tags};
 
 pub use arc::CircleArc;
 pub use body::{ContactPiece, Section};

@@ -70,7 +70,7 @@ pub fn make_mesh(section: &Section, size: &SizeField) -> Result<(Arc<Mesh>, f64)
     let region = |p: [f64; 2]| section.region(p);
     let (mesh, info) = mesher::mesh(&section.outline(), &region, size, &MeshParams::default())
         .map_err(|e| AnalysisError::Mesh { depth_m: section.depth_m(), reason: e.to_string() })?;
-    Ok((Arc::new(mesh), info.smallest_angle_rad))
+    Ok((Arc::new(mesh), info.smallest_angle_away_rad))
 }
 
 /// Sizes of the next mesh from the errors of the last one.
