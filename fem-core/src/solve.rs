@@ -42,7 +42,7 @@ impl Default for SolveParams {
 pub struct SolveInfo {
     /// Number of unknowns.
     pub n_unknowns: usize,
-    /// Entries of `L`, diagonal included, as its structure has them; zeros stored for speed are not counted.
+    /// Entries of `L`, diagonal included; with the zeros that merged blocks of columns hold.
     pub n_factor_entries: usize,
     /// Multiplications and additions of the factorization, `Σ c²` over the entries `c` of each column of `L`.
     pub flops: f64,

@@ -59,7 +59,7 @@ impl Symbolic {
         self.n
     }
 
-    /// Entries of `L`, diagonal included; with the zeros that merged supernodes hold.
+    /// Entries of `L`, diagonal included; with the zeros that merged blocks of columns hold.
     pub fn n_factor_entries(&self) -> usize {
         self.n_factor_entries
     }
