@@ -2,8 +2,10 @@
 pub mod csv;
 pub mod figures;
 pub mod folder;
+pub mod geojson;
 pub mod html;
 pub mod json;
+pub mod map;
 pub mod svg;
 pub mod text;
 pub mod vtk;
