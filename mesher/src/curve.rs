@@ -70,25 +70,25 @@ pub(crate) fn strands(outline: &Outline, grid: &Grid, size: &mut SizeIndex, tole
 struct Sweep {
     arc: Arc,
     start_rad: f64,
-    sweep_rad: f64,
+    turn_rad: f64,
     radii: [f64; 2],
 }
 
 impl Sweep {
     fn new(from: Point, to: Point, arc: Arc) -> Self {
         let (u, v) = (minus(from, arc.center_m), minus(to, arc.center_m));
-        let sweep_rad = cross(u, v).atan2(u[0] * v[0] + u[1] * v[1]);
-        Self { arc, start_rad: u[1].atan2(u[0]), sweep_rad, radii: [u[0].hypot(u[1]), v[0].hypot(v[1])] }
+        let turn_rad = cross(u, v).atan2(u[0] * v[0] + u[1] * v[1]);
+        Self { arc, start_rad: u[1].atan2(u[0]), turn_rad, radii: [u[0].hypot(u[1]), v[0].hypot(v[1])] }
     }
 
     fn length(&self) -> f64 {
-        (self.sweep_rad * self.arc.radius_m).abs()
+        (self.turn_rad * self.arc.radius_m).abs()
     }
 
     /// Point at a share `t` of the sweep. The radius runs from that of one end to that of the other, so the chain meets both ends.
     fn point(&self, t: f64) -> Point {
         let radius = self.radii[0] + t * (self.radii[1] - self.radii[0]);
-        let (sin, cos) = (self.start_rad + t * self.sweep_rad).sin_cos();
+        let (sin, cos) = (self.start_rad + t * self.turn_rad).sin_cos();
         [self.arc.center_m[0] + radius * cos, self.arc.center_m[1] + radius * sin]
     }
 
@@ -96,14 +96,14 @@ impl Sweep {
     fn share(&self, p: Point) -> f64 {
         let d = minus(p, self.arc.center_m);
         let mut turn = d[1].atan2(d[0]) - self.start_rad;
-        let middle = 0.5 * self.sweep_rad;
+        let middle = 0.5 * self.turn_rad;
         while turn < middle - PI {
             turn += 2.0 * PI;
         }
         while middle + PI < turn {
             turn -= 2.0 * PI;
         }
-        turn / self.sweep_rad
+        turn / self.turn_rad
     }
 }
 
@@ -144,7 +144,7 @@ fn n_chords(sweep: &Sweep, from: f64, to: f64, size: &mut SizeIndex, tolerance: 
     let length = (to - from) * sweep.length();
     let wanted = size.size(sweep.point(from)).min(size.size(sweep.point(to))).min(size.size(sweep.point(0.5 * (from + to))));
     let by_size = (length / wanted).round();
-    let by_angle = ((to - from) * sweep.sweep_rad.abs() / CHORD_RAD - 1e-9).ceil();
+    let by_angle = ((to - from) * sweep.turn_rad.abs() / CHORD_RAD - 1e-9).ceil();
     let most = (length / (CHORD_TOLERANCES * tolerance)).floor();
     by_size.max(by_angle).min(most).max(1.0) as usize
 }

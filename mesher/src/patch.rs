@@ -23,7 +23,7 @@ pub(crate) struct Body {
 /// What can be reached from outside the hull without crossing a piece is void without being asked for. Returns `None` if nothing is left.
 pub(crate) fn carve(all: &Triangulation, input: &Noded, cut: &Pieces, tolerance: f64, region: &Region<'_>) -> Option<Body> {
     // Step 1: number the patches; 0 is the outside.
-    let (patch, n) = flood(&all);
+    let (patch, n) = flood(all);
     // Step 2: the fattest triangle of each.
     let mut fattest: Vec<(f64, u32)> = vec![(-1.0, NONE); n as usize];
     for (t, &p) in patch.iter().enumerate() {
@@ -103,10 +103,8 @@ fn spread(all: &Triangulation, patch: &mut [u32], mut stack: Vec<u32>, number: u
 fn prune(all: &Triangulation, labels: &[Option<u32>]) -> (Triangulation, Vec<u32>) {
     let mut number = vec![NONE; labels.len()];
     let mut vertex = vec![NONE; all.points.len()];
-    let mut n = 0;
-    for (t, _) in labels.iter().enumerate().filter(|(_, label)| label.is_some()) {
-        number[t] = n;
-        n += 1;
+    for (new, (t, _)) in labels.iter().enumerate().filter(|(_, label)| label.is_some()).enumerate() {
+        number[t] = new as u32;
         for &v in &all.corners[t] {
             vertex[v as usize] = 0;
         }

@@ -22,7 +22,7 @@ pub(crate) struct Pieces {
     pub(crate) points: Vec<Point>,
     /// Segment of each point inside one; [`u32::MAX`] for noded points.
     pub(crate) segment_of: Vec<u32>,
-    pub(crate) pieces: Vec<Piece>,
+    pub(crate) parts: Vec<Piece>,
     /// Point numbers of the ends of each piece, in the direction of its segment.
     pub(crate) ends: Vec<[u32; 2]>,
 }
@@ -30,7 +30,7 @@ pub(crate) struct Pieces {
 /// Cuts every segment so that pieces have the wanted size; a slit of a single segment gets two pieces, else it could not open.
 pub(crate) fn cut(noded: &Noded, size: &mut SizeIndex) -> Pieces {
     let mut out =
-        Pieces { points: noded.points.clone(), segment_of: vec![u32::MAX; noded.points.len()], pieces: Vec::new(), ends: Vec::new() };
+        Pieces { points: noded.points.clone(), segment_of: vec![u32::MAX; noded.points.len()], parts: Vec::new(), ends: Vec::new() };
     let lonely = lonely_slits(noded);
     for (i, segment) in noded.segments.iter().enumerate() {
         let [a, b] = segment.ends.map(|v| noded.points[v as usize]);
@@ -53,7 +53,7 @@ pub(crate) fn cut(noded: &Noded, size: &mut SizeIndex) -> Pieces {
 
 impl Pieces {
     fn push(&mut self, segment: usize, [from, to]: [u32; 2], ends: [u32; 2]) {
-        self.pieces.push(Piece { segment: segment as u32, from, to });
+        self.parts.push(Piece { segment: segment as u32, from, to });
         self.ends.push(ends);
     }
 }

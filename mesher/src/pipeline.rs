@@ -71,7 +71,7 @@ pub fn mesh(
     let all = Triangulation::of(&cut).ok_or(crossing)?;
     let body = carve(&all, &noded, &cut, tolerance, &Region { label: region, grid }).ok_or(MeshError::NoBody)?;
     // Step 3: sizes, angles, shapes.
-    let mut refined = refine(body, cut.pieces, &mut sizes, &grid, params)?;
+    let mut refined = refine(body, cut.parts, &mut sizes, &grid, params)?;
     onto_arcs(&mut refined, &arcs);
     smooth(&mut refined, params.n_smoothing_rounds);
     // Step 4: slits, six nodes, facts.

@@ -71,7 +71,7 @@ fn straighten(of: &Triangulation, triangles: &[[u32; 6]], bent: &[(usize, usize)
         let other = if twin == NONE { t } else { place(twin).0 };
         let folds = [t, other].into_iter().any(|t| {
             let p = triangles[t].map(|v| points[v as usize]);
-            !(JACOBIAN * of.measures(t).0 < fem_core::mesh::quality::jacobian_bound_m2(&p))
+            fem_core::mesh::quality::jacobian_bound_m2(&p) <= JACOBIAN * of.measures(t).0
         });
         if folds {
             let nodes = triangles[t];

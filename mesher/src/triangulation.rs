@@ -65,7 +65,7 @@ impl Triangulation {
             *kernel.undirected_edge_data_mut(edge).data_mut() = piece as u32 + 1;
         }
         let n = kernel.num_inner_faces();
-        let mut out = Self { points: input.points.clone(), side_of_piece: vec![NONE; input.pieces.len()], ..Self::default() };
+        let mut out = Self { points: input.points.clone(), side_of_piece: vec![NONE; input.parts.len()], ..Self::default() };
         out.corners.reserve(n);
         // The kernel numbers inner faces from 1 without gaps; the outer one is 0.
         for face in kernel.inner_faces() {
@@ -134,11 +134,11 @@ impl Triangulation {
         let t = triangle as usize;
         self.corners[t] = corners;
         self.regions[t] = region;
-        for k in 0..3 {
-            self.twins[t][k] = beyond[k].twin;
-            self.pieces[t][k] = beyond[k].piece;
-            if beyond[k].piece != NONE {
-                self.side_of_piece[beyond[k].piece as usize] = side(triangle, k);
+        for (k, Beyond { twin, piece }) in beyond.into_iter().enumerate() {
+            self.twins[t][k] = twin;
+            self.pieces[t][k] = piece;
+            if piece != NONE {
+                self.side_of_piece[piece as usize] = side(triangle, k);
             }
         }
     }
