@@ -25,8 +25,15 @@ pub(crate) struct Strand {
 /// Straight segments and chords of all lines, and the circles of the chords, in local coordinates.
 ///
 /// An arc is broken where another line starts, ends or crosses it, so that both meet in a point of the circle; in between, its chords have
-/// the wanted size. Arcs with the same ends and circle get the same chords in either direction.
-pub(crate) fn strands(outline: &Outline, grid: &Grid, size: &mut SizeIndex, tolerance: f64) -> (Vec<Strand>, Vec<Arc>) {
+/// the wanted size. Arcs with the same ends and circle get the same chords in either direction. `breaks_at` are further points of circles at
+/// which to break arcs.
+pub(crate) fn strands(
+    outline: &Outline,
+    grid: &Grid,
+    size: &mut SizeIndex,
+    tolerance: f64,
+    breaks_at: &[Point],
+) -> (Vec<Strand>, Vec<Arc>) {
     let mut straight = Vec::new();
     let mut curved = Vec::new();
     for line in &outline.lines {
@@ -46,7 +53,8 @@ pub(crate) fn strands(outline: &Outline, grid: &Grid, size: &mut SizeIndex, tole
         let reversed = strand.to < strand.from;
         let (from, to) = if reversed { (strand.to, strand.from) } else { (strand.from, strand.to) };
         let sweep = Sweep::new(from, to, *arc);
-        let breaks = breaks(&sweep, &straight, &curved, tolerance);
+        let ends = straight.iter().chain(curved.iter().map(|(s, _)| s)).flat_map(|s| [s.from, s.to]);
+        let breaks = breaks(&sweep, ends.chain(breaks_at.iter().copied()), &straight, tolerance);
         let mut points = vec![from];
         for span in breaks.windows(2) {
             let n = n_chords(&sweep, span[0], span[1], size, tolerance);
@@ -108,13 +116,10 @@ impl Sweep {
 }
 
 /// Shares of the sweep, 0 and 1 included, at which other lines start, end or cross the arc.
-fn breaks(sweep: &Sweep, straight: &[Strand], curved: &[(Strand, Arc)], tolerance: f64) -> Vec<f64> {
+fn breaks(sweep: &Sweep, points: impl Iterator<Item = Point>, straight: &[Strand], tolerance: f64) -> Vec<f64> {
     let (center, radius) = (sweep.arc.center_m, sweep.arc.radius_m);
     let near = |p: Point| (distance(p, center) - radius).abs() <= tolerance;
-    let mut shares: Vec<f64> = Vec::new();
-    for strand in straight.iter().chain(curved.iter().map(|(s, _)| s)) {
-        shares.extend([strand.from, strand.to].into_iter().filter(|&p| near(p)).map(|p| sweep.share(p)));
-    }
+    let mut shares: Vec<f64> = points.filter(|&p| near(p)).map(|p| sweep.share(p)).collect();
     for strand in straight {
         // |from + t d - center|^2 = radius^2
         let (d, f) = (minus(strand.to, strand.from), minus(strand.from, center));

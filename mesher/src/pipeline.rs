@@ -3,9 +3,9 @@ use fem_core::mesh::Mesh;
 
 use crate::curve::strands;
 use crate::error::MeshError;
-use crate::geometry::sine_squared_of_smallest_angle;
+use crate::geometry::{Point, sine_squared_of_smallest_angle};
 use crate::node::node;
-use crate::outline::Outline;
+use crate::outline::{Arc, Outline};
 use crate::params::{MeshInfo, MeshParams};
 use crate::patch::{Region, carve};
 use crate::pieces::cut;
@@ -23,6 +23,8 @@ use crate::validate::validate;
 const TOLERANCE: f64 = 4e-6;
 /// The tolerance is at least this many steps of the grid.
 const TOLERANCE_STEPS: f64 = 4.0;
+/// Further tries where moving vertices onto arcs made angles too small; one is needed in about one of 300 random cliffs.
+const RETRIES: usize = 2;
 
 /// Meshes an outline with six-node triangles.
 ///
@@ -36,8 +38,8 @@ const TOLERANCE_STEPS: f64 = 4.0;
 /// - everything [`Mesh`] promises; an edge on several lines appears once for each tag, in the direction of its line;
 /// - corner nodes on straight lines lie on them to rounding, all nodes on arcs lie on their circle; *exception:* input points moved by at most
 ///   `snapped_m`, and sides counted in `n_straightened`;
-/// - no corner angle under `smallest_angle_rad` away from sharp input corners before smoothing and moving onto arcs, see
-///   [`MeshInfo::smallest_angle_away_rad`] for the finished mesh; *exception:* those counted in `n_unimproved`;
+/// - no corner angle under `smallest_angle_rad` away from sharp input corners; *exceptions:* triangles counted in `n_unimproved`, and a few beside
+///   arcs if two retries did not help. [`MeshInfo::smallest_angle_away_rad`] tells of the finished mesh;
 /// - the same input gives the same mesh, bit by bit.
 ///
 /// # Errors
@@ -58,31 +60,65 @@ pub fn mesh(
     params: &MeshParams,
 ) -> Result<(Mesh, MeshInfo), MeshError> {
     validate(outline, size, params)?;
-    // Step 1: local coordinates, lines split at each other.
+    // Step 1: local coordinates.
     let grid = Grid::over(outline.lines.iter().flat_map(|line| line.points_m.iter().copied()));
     let tolerance = params.tolerance_m.unwrap_or(TOLERANCE * grid.extent_m()).max(TOLERANCE_STEPS * grid.unit_m());
     let mut sizes = SizeIndex::new(size, &grid);
-    let (strands, arcs) = strands(outline, &grid, &mut sizes, tolerance);
-    let noded = node(&strands, &grid, tolerance)?;
-    // Step 2: the triangulation of the body.
-    let cut = cut(&noded, &mut sizes);
-    let place = grid.global(noded.points[0]);
-    let crossing = MeshError::Noding { tolerance_m: tolerance, x_m: place[0], y_m: place[1] };
-    let all = Triangulation::of(&cut).ok_or(crossing)?;
-    let body = carve(&all, &noded, &cut, tolerance, &Region { label: region, grid }).ok_or(MeshError::NoBody)?;
-    // Step 3: sizes, angles, shapes.
-    let mut refined = refine(body, cut.parts, &mut sizes, &grid, params)?;
-    onto_arcs(&mut refined, &arcs);
-    smooth(&mut refined, params.n_smoothing_rounds);
-    // Step 4: slits, six nodes, facts.
-    let mut info = MeshInfo { snapped_m: noded.snapped_m, tolerance_m: tolerance, ..facts(&refined) };
-    let Refined { body, pieces, sizes: vertex_sizes, .. } = &mut refined;
-    info.n_slit_nodes = open_slits(&mut body.triangulation, pieces, &body.segments, vertex_sizes);
-    let origins = Origins { pieces, segments: &body.segments, arcs: &arcs };
+    // Step 2: triangles. Vertices that refinement put inside chords move onto the circle; where that costs too much angle, the arcs are broken
+    // there from the start.
+    let input = Input { outline, grid, tolerance, label: region, params };
+    let mut draft = input.draft(&mut sizes, &[])?;
+    for _ in 0..RETRIES {
+        if draft.moved.is_empty() || params.smallest_angle_rad <= draft.info.smallest_angle_away_rad {
+            break;
+        }
+        draft = input.draft(&mut sizes, &draft.moved)?;
+    }
+    // Step 3: slits, six nodes, facts.
+    let Draft { refined: Refined { mut body, pieces, .. }, arcs, mut info, .. } = draft;
+    info.n_slit_nodes = open_slits(&mut body.triangulation, &pieces, &body.segments);
+    let origins = Origins { pieces: &pieces, segments: &body.segments, arcs: &arcs };
     let (mesh, n_straightened) = upgrade(&body.triangulation, origins, &grid);
     info.n_straightened = n_straightened;
     (info.n_triangles, info.n_corners, info.n_nodes) = (mesh.triangles.len(), mesh.n_corners, mesh.points_m.len());
     Ok((mesh, info))
+}
+
+struct Input<'a> {
+    outline: &'a Outline,
+    grid: Grid,
+    tolerance: f64,
+    label: &'a dyn Fn([f64; 2]) -> Option<u32>,
+    params: &'a MeshParams,
+}
+
+/// A smoothed triangulation, not yet opened.
+struct Draft {
+    refined: Refined,
+    arcs: Vec<Arc>,
+    /// Where vertices were moved onto an arc, in local coordinates.
+    moved: Vec<Point>,
+    info: MeshInfo,
+}
+
+impl Input<'_> {
+    fn draft(&self, sizes: &mut SizeIndex, breaks_at: &[Point]) -> Result<Draft, MeshError> {
+        let Self { outline, grid, tolerance, label, params } = self;
+        // Step 1: lines split at each other and into pieces of the wanted size.
+        let (strands, arcs) = strands(outline, grid, sizes, *tolerance, breaks_at);
+        let noded = node(&strands, grid, *tolerance)?;
+        let cut = cut(&noded, sizes);
+        // Step 2: the triangulation of the body.
+        let [x_m, y_m] = grid.global(noded.points[0]);
+        let all = Triangulation::of(&cut).ok_or(MeshError::Noding { tolerance_m: *tolerance, x_m, y_m })?;
+        let body = carve(&all, &noded, &cut, *tolerance, &Region { label: *label, grid: *grid }).ok_or(MeshError::NoBody)?;
+        // Step 3: sizes, angles, shapes.
+        let mut refined = refine(body, cut.parts, sizes, grid, params)?;
+        let moved = onto_arcs(&mut refined, &arcs);
+        smooth(&mut refined, params.n_smoothing_rounds);
+        let info = MeshInfo { snapped_m: noded.snapped_m, tolerance_m: *tolerance, ..facts(&refined) };
+        Ok(Draft { refined, arcs, moved, info })
+    }
 }
 
 /// Angles and counts of a refined body.

@@ -25,7 +25,8 @@ pub struct SizeField {
     pub gradation: f64,
     /// Points and segments near which elements are smaller.
     pub sources: Vec<SizeSource>,
-    /// Sizes in m at points in m, for instance those that an error field asks for at the centers of the last mesh's triangles.
+    /// Sizes in m at points in m, for instance those that an error field asks for at the corner nodes of the last mesh. As the smallest governs,
+    /// scatter from point to point makes the mesh finer than its mean: give means over the triangles around a node rather than single triangles.
     pub background: Vec<([f64; 2], f64)>,
 }
 

@@ -11,7 +11,7 @@ use crate::triangulation::{NEXT, NONE, PREVIOUS, Side, Triangulation, place, sid
 /// - a slit that runs through parts the body into two that share no node.
 ///
 /// Returns the number of nodes added.
-pub(crate) fn open_slits(of: &mut Triangulation, pieces: &[Piece], segments: &[Segment], sizes: &mut Vec<f64>) -> usize {
+pub(crate) fn open_slits(of: &mut Triangulation, pieces: &[Piece], segments: &[Segment]) -> usize {
     let is_open = |piece: u32| piece != NONE && segments[pieces[piece as usize].segment as usize].open;
     // Step 1: the vertices on open sides, and a cut between the triangles there.
     let mut on_slit = vec![false; of.points.len()];
@@ -41,7 +41,6 @@ pub(crate) fn open_slits(of: &mut Triangulation, pieces: &[Piece], segments: &[S
             }
             let node = if taken[v as usize] {
                 of.points.push(of.points[v as usize]);
-                sizes.push(sizes[v as usize]);
                 of.points.len() as u32 - 1
             } else {
                 v

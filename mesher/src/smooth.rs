@@ -10,8 +10,8 @@ const GOOD: f64 = 0.25;
 /// Shares of the way to the target that are tried in turn.
 const STEPS: [f64; 3] = [1.0, 0.5, 0.25];
 
-/// Puts vertices inside chords onto the circles. One that would turn a triangle over stays on its chord.
-pub(crate) fn onto_arcs(refined: &mut Refined, arcs: &[Arc]) {
+/// Puts vertices inside chords onto the circles. One that would turn a triangle over stays on its chord. Returns the points moved to.
+pub(crate) fn onto_arcs(refined: &mut Refined, arcs: &[Arc]) -> Vec<Point> {
     let body = &mut refined.body;
     let mut moved: Vec<(usize, Point)> = Vec::new();
     for (v, &segment) in body.segment_of.iter().enumerate().filter(|(_, s)| **s != NONE) {
@@ -20,11 +20,8 @@ pub(crate) fn onto_arcs(refined: &mut Refined, arcs: &[Arc]) {
             body.triangulation.points[v] = onto_circle(body.triangulation.points[v], &arcs[arc as usize]);
         }
     }
-    if moved.is_empty() {
-        return;
-    }
     let of = &mut body.triangulation;
-    loop {
+    while !moved.is_empty() {
         let is_turned = |t: &usize| {
             let [a, b, c] = of.corner_points(*t);
             orient(a, b, c) <= 0.0
@@ -39,9 +36,10 @@ pub(crate) fn onto_arcs(refined: &mut Refined, arcs: &[Arc]) {
             stays
         });
         if turned.is_empty() || moved.len() == before {
-            return;
+            break;
         }
     }
+    moved.iter().map(|&(v, _)| of.points[v]).collect()
 }
 
 /// Rounds of guarded Laplace smoothing (Freitag 1997), each followed by flips to Delaunay.

@@ -1,2 +1,5 @@
-//! Tests of the whole path.
+//! Tests of the whole path: by hand, over random cliffs, slits, hard input.
+mod cliffs;
+mod hard;
 mod plain;
+mod slits;

@@ -3,8 +3,10 @@ use super::{SizeField, SizeSource};
 use crate::geometry::Point;
 use crate::snap::Grid;
 
-/// A box with more candidates than this is divided when it is asked.
+/// A box with more candidates than this may be divided.
 const CANDIDATES: u32 = 6;
+/// A box is divided once it was asked this often: dividing costs as much as four answers, and pays only where many more are to come.
+const VISITS: u32 = 6;
 /// Most divisions: a box of the last level is 2^-14 of the extent wide.
 const LEVELS: u8 = 14;
 /// "No child yet".
@@ -44,6 +46,7 @@ struct Box {
     first_child: u32,
     start: u32,
     len: u32,
+    visits: u32,
 }
 
 impl SizeIndex {
@@ -51,7 +54,8 @@ impl SizeIndex {
     pub(crate) fn new(field: &SizeField, grid: &Grid) -> Self {
         let sources: Vec<LocalSource> = field.all_sources().map(|s| LocalSource::new(&s, grid)).collect();
         let lists: Vec<u32> = (0..sources.len() as u32).collect();
-        let root = Box { center: [0.0, 0.0], half: grid.extent_m(), level: 0, first_child: NONE, start: 0, len: sources.len() as u32 };
+        let root =
+            Box { center: [0.0, 0.0], half: grid.extent_m(), level: 0, first_child: NONE, start: 0, len: sources.len() as u32, visits: 0 };
         Self { sources, gradation: field.gradation, largest: field.largest_m, boxes: vec![root], lists, values: Vec::new() }
     }
 
@@ -62,7 +66,8 @@ impl SizeIndex {
             let b = self.boxes[at];
             if b.first_child == NONE {
                 let inside = (p[0] - b.center[0]).abs() <= b.half && (p[1] - b.center[1]).abs() <= b.half;
-                if b.len <= CANDIDATES || LEVELS <= b.level || !inside {
+                if b.len <= CANDIDATES || LEVELS <= b.level || b.visits < VISITS || !inside {
+                    self.boxes[at].visits += 1;
                     return self.smallest(b, p);
                 }
                 self.divide(at);
@@ -87,7 +92,7 @@ impl SizeIndex {
         for (dx, dy) in [(-half, -half), (half, -half), (-half, half), (half, half)] {
             let center = [parent.center[0] + dx, parent.center[1] + dy];
             let (start, len) = self.candidates(parent, center, half);
-            self.boxes.push(Box { center, half, level: parent.level + 1, first_child: NONE, start, len });
+            self.boxes.push(Box { center, half, level: parent.level + 1, first_child: NONE, start, len, visits: 0 });
         }
     }
 
