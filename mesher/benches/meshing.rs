@@ -25,7 +25,7 @@ fn main() {
     }
     background();
     if large {
-        report(0.076, 2);
+        report(0.022, 3);
     }
 }
 

@@ -27,13 +27,7 @@ pub(crate) struct Strand {
 /// An arc is broken where another line starts, ends or crosses it, so that both meet in a point of the circle; in between, its chords have
 /// the wanted size. Arcs with the same ends and circle get the same chords in either direction. `breaks_at` are further points of circles at
 /// which to break arcs.
-pub(crate) fn strands(
-    outline: &Outline,
-    grid: &Grid,
-    size: &mut SizeIndex,
-    tolerance: f64,
-    breaks_at: &[Point],
-) -> (Vec<Strand>, Vec<Arc>) {
+pub(crate) fn strands(outline: &Outline, grid: &Grid, size: &SizeIndex, tolerance: f64, breaks_at: &[Point]) -> (Vec<Strand>, Vec<Arc>) {
     let mut straight = Vec::new();
     let mut curved = Vec::new();
     for line in &outline.lines {
@@ -145,7 +139,7 @@ fn breaks(sweep: &Sweep, points: impl Iterator<Item = Point>, straight: &[Strand
 }
 
 /// Number of chords between two shares: of the wanted size, no wider than [`CHORD_RAD`], no shorter than a few tolerances.
-fn n_chords(sweep: &Sweep, from: f64, to: f64, size: &mut SizeIndex, tolerance: f64) -> usize {
+fn n_chords(sweep: &Sweep, from: f64, to: f64, size: &SizeIndex, tolerance: f64) -> usize {
     let length = (to - from) * sweep.length();
     let wanted = size.size(sweep.point(from)).min(size.size(sweep.point(to))).min(size.size(sweep.point(0.5 * (from + to))));
     let by_size = (length / wanted).round();

@@ -28,7 +28,7 @@ pub(crate) struct Pieces {
 }
 
 /// Cuts every segment so that pieces have the wanted size; a slit of a single segment gets two pieces, else it could not open.
-pub(crate) fn cut(noded: &Noded, size: &mut SizeIndex) -> Pieces {
+pub(crate) fn cut(noded: &Noded, size: &SizeIndex) -> Pieces {
     let mut out =
         Pieces { points: noded.points.clone(), segment_of: vec![u32::MAX; noded.points.len()], parts: Vec::new(), ends: Vec::new() };
     let lonely = lonely_slits(noded);
@@ -71,7 +71,7 @@ fn lonely_slits(noded: &Noded) -> Vec<bool> {
 }
 
 /// Lattice points inside a segment that share the integral of `1 / h` along it evenly (docs/theory.md eq. (2.2)).
-fn cuts_by_size(a: Point, b: Point, size: &mut SizeIndex) -> Vec<u32> {
+fn cuts_by_size(a: Point, b: Point, size: &SizeIndex) -> Vec<u32> {
     let length = distance(a, b);
     let mut h = size.size(a);
     if length <= h.min(size.size(b)) {

@@ -63,16 +63,16 @@ pub fn mesh(
     // Step 1: local coordinates.
     let grid = Grid::over(outline.lines.iter().flat_map(|line| line.points_m.iter().copied()));
     let tolerance = params.tolerance_m.unwrap_or(TOLERANCE * grid.extent_m()).max(TOLERANCE_STEPS * grid.unit_m());
-    let mut sizes = SizeIndex::new(size, &grid);
+    let sizes = SizeIndex::new(size, &grid);
     // Step 2: triangles. Vertices that refinement put inside chords move onto the circle; where that costs too much angle, the arcs are broken
     // there from the start.
     let input = Input { outline, grid, tolerance, label: region, params };
-    let mut draft = input.draft(&mut sizes, &[])?;
+    let mut draft = input.draft(&sizes, &[])?;
     for _ in 0..RETRIES {
         if draft.moved.is_empty() || params.smallest_angle_rad <= draft.info.smallest_angle_away_rad {
             break;
         }
-        draft = input.draft(&mut sizes, &draft.moved)?;
+        draft = input.draft(&sizes, &draft.moved)?;
     }
     // Step 3: slits, six nodes, facts.
     let Draft { refined: Refined { mut body, pieces, .. }, arcs, mut info, .. } = draft;
@@ -102,7 +102,7 @@ struct Draft {
 }
 
 impl Input<'_> {
-    fn draft(&self, sizes: &mut SizeIndex, breaks_at: &[Point]) -> Result<Draft, MeshError> {
+    fn draft(&self, sizes: &SizeIndex, breaks_at: &[Point]) -> Result<Draft, MeshError> {
         let Self { outline, grid, tolerance, label, params } = self;
         // Step 1: lines split at each other and into pieces of the wanted size.
         let (strands, arcs) = strands(outline, grid, sizes, *tolerance, breaks_at);

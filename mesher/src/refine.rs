@@ -40,7 +40,7 @@ pub(crate) struct Refined {
 ///
 /// # Errors
 /// [`MeshError::TooManyVertices`].
-pub(crate) fn refine(body: Body, pieces: Vec<Piece>, size: &mut SizeIndex, grid: &Grid, params: &MeshParams) -> Result<Refined, MeshError> {
+pub(crate) fn refine(body: Body, pieces: Vec<Piece>, size: &SizeIndex, grid: &Grid, params: &MeshParams) -> Result<Refined, MeshError> {
     let sizes = body.triangulation.points.iter().map(|&p| size.size(p)).collect();
     let sharp = sharp_corners(&body.triangulation, &body.segment_of);
     let n_triangles = body.triangulation.n_triangles();
@@ -75,7 +75,7 @@ pub(crate) fn refine(body: Body, pieces: Vec<Piece>, size: &mut SizeIndex, grid:
 
 struct Run<'a> {
     state: Refined,
-    size: &'a mut SizeIndex,
+    size: &'a SizeIndex,
     criterion: Criterion,
     /// Triangles that had a fault, with the corners by which to tell that they are still there.
     faces: VecDeque<(u32, [u32; 3])>,

@@ -1,32 +1,25 @@
-//! Finds the few sources that can govern the size at a point: a quadtree of candidate lists, grown where it is asked.
+//! Finds the size at a point without trying every source: a tree of boxes around sources, searched with a bound.
 use super::{SizeField, SizeSource};
 use crate::geometry::Point;
 use crate::snap::Grid;
 
-/// A box with more candidates than this may be divided.
-const CANDIDATES: u32 = 6;
-/// A box is divided once it was asked this often: dividing costs as much as four answers, and pays only where many more are to come.
-const VISITS: u32 = 6;
-/// Most divisions: a box of the last level is 2^-14 of the extent wide.
-const LEVELS: u8 = 14;
-/// "No child yet".
-const NONE: u32 = u32::MAX;
+/// Most sources of a box without children.
+const LEAF: usize = 6;
 
 /// Index of a [`SizeField`] in the mesher's local coordinates.
 ///
 /// # Guarantees
-/// [`SizeIndex::size`] equals [`SizeField::evaluate_m`] up to the rounding of the change of coordinates. A source is left out of a box only if
-/// it cannot govern anywhere in it: with the box's center `c` and half diagonal `r`, every value changes by at most `gradation * r` inside, so
-/// one that exceeds the smallest at `c` by more than `2 * gradation * r` stays larger.
+/// [`SizeIndex::size`] equals [`SizeField::evaluate_m`] up to the rounding of the change of coordinates. A box is passed over only if no source
+/// in it can be smaller than what was found: a source at the distance `d` or more gives at least its size, and at least
+/// `size - gradation * within + gradation * d`.
 #[derive(Debug)]
 pub(crate) struct SizeIndex {
+    /// In the order of the leaves.
     sources: Vec<LocalSource>,
+    /// The first is the root; children follow their parent.
+    boxes: Vec<Box>,
     gradation: f64,
     largest: f64,
-    boxes: Vec<Box>,
-    lists: Vec<u32>,
-    /// Values at the center of the box being divided.
-    values: Vec<f64>,
 }
 
 #[derive(Debug, Clone, Copy)]
@@ -40,78 +33,109 @@ struct LocalSource {
 
 #[derive(Debug, Clone, Copy)]
 struct Box {
-    center: Point,
-    half: f64,
-    level: u8,
-    first_child: u32,
+    low: Point,
+    high: Point,
+    /// Smallest size of a source inside.
+    size: f64,
+    /// Smallest `size - gradation * within`.
+    floor: f64,
     start: u32,
-    len: u32,
-    visits: u32,
+    end: u32,
+    /// Second child; the first is the next box. 0 for a leaf.
+    second: u32,
 }
 
 impl SizeIndex {
-    /// Index over the whole extent of a grid.
     pub(crate) fn new(field: &SizeField, grid: &Grid) -> Self {
         let sources: Vec<LocalSource> = field.all_sources().map(|s| LocalSource::new(&s, grid)).collect();
-        let lists: Vec<u32> = (0..sources.len() as u32).collect();
-        let root =
-            Box { center: [0.0, 0.0], half: grid.extent_m(), level: 0, first_child: NONE, start: 0, len: sources.len() as u32, visits: 0 };
-        Self { sources, gradation: field.gradation, largest: field.largest_m, boxes: vec![root], lists, values: Vec::new() }
+        let mut index = Self { boxes: Vec::new(), gradation: field.gradation, largest: field.largest_m, sources };
+        if !index.sources.is_empty() {
+            index.build(0, index.sources.len());
+        }
+        index
     }
 
     /// Wanted size at a point in local coordinates.
-    pub(crate) fn size(&mut self, p: Point) -> f64 {
-        let mut at = 0;
-        loop {
-            let b = self.boxes[at];
-            if b.first_child == NONE {
-                let inside = (p[0] - b.center[0]).abs() <= b.half && (p[1] - b.center[1]).abs() <= b.half;
-                if b.len <= CANDIDATES || LEVELS <= b.level || b.visits < VISITS || !inside {
-                    self.boxes[at].visits += 1;
-                    return self.smallest(b, p);
+    pub(crate) fn size(&self, p: Point) -> f64 {
+        let mut best = self.largest;
+        // A tree over 2^32 sources, halved at every level, is 32 deep.
+        let mut stack = [(0_u32, 0.0_f64); 40];
+        let mut depth = 0;
+        if let Some(root) = self.boxes.first() {
+            stack[0] = (0, self.bound(root, p));
+            depth = 1;
+        }
+        while 0 < depth {
+            depth -= 1;
+            let (i, bound) = stack[depth];
+            if best <= bound {
+                continue;
+            }
+            let b = &self.boxes[i as usize];
+            if b.second == 0 {
+                for source in &self.sources[b.start as usize..b.end as usize] {
+                    best = best.min(source.size_at(p, self.gradation));
                 }
-                self.divide(at);
-            } else {
-                let east = usize::from(b.center[0] < p[0]);
-                let north = usize::from(b.center[1] < p[1]);
-                at = b.first_child as usize + east + 2 * north;
+                continue;
+            }
+            let (first, second) = (i + 1, b.second);
+            let bounds = [first, second].map(|c| (c, self.bound(&self.boxes[c as usize], p)));
+            // The lower bound is searched first, so it goes on the stack last.
+            let order = if bounds[0].1 < bounds[1].1 { [bounds[1], bounds[0]] } else { bounds };
+            for child in order {
+                stack[depth] = child;
+                depth += 1;
             }
         }
+        best
     }
 
-    fn smallest(&self, b: Box, p: Point) -> f64 {
-        let list = &self.lists[b.start as usize..(b.start + b.len) as usize];
-        list.iter().map(|&s| self.sources[s as usize].size_at(p, self.gradation)).fold(self.largest, f64::min)
+    /// Least size that a source in the box can give at `p`.
+    fn bound(&self, b: &Box, p: Point) -> f64 {
+        let off = |k: usize| (b.low[k] - p[k]).max(p[k] - b.high[k]).max(0.0);
+        let (x, y) = (off(0), off(1));
+        b.size.max(b.floor + self.gradation * (x * x + y * y).sqrt())
     }
 
-    /// Gives a box four children, each with the candidates that can govern in it.
-    fn divide(&mut self, at: usize) {
-        let parent = self.boxes[at];
-        self.boxes[at].first_child = self.boxes.len() as u32;
-        let half = 0.5 * parent.half;
-        for (dx, dy) in [(-half, -half), (half, -half), (-half, half), (half, half)] {
-            let center = [parent.center[0] + dx, parent.center[1] + dy];
-            let (start, len) = self.candidates(parent, center, half);
-            self.boxes.push(Box { center, half, level: parent.level + 1, first_child: NONE, start, len, visits: 0 });
+    /// Adds the box around sources `start..end` and its children, halving along the longer side.
+    fn build(&mut self, start: usize, end: usize) {
+        let own = self.boxes.len();
+        self.boxes.push(Box::around(&self.sources[start..end], self.gradation, start));
+        if end - start <= LEAF {
+            return;
         }
+        let b = &self.boxes[own];
+        let axis = usize::from(b.high[0] - b.low[0] < b.high[1] - b.low[1]);
+        let center = |s: &LocalSource| s.from[axis] + 0.5 * s.along[axis];
+        let half = (end - start) / 2;
+        self.sources[start..end].select_nth_unstable_by(half, |s, t| center(s).total_cmp(&center(t)));
+        self.build(start, start + half);
+        self.boxes[own].second = self.boxes.len() as u32;
+        self.build(start + half, end);
     }
+}
 
-    fn candidates(&mut self, parent: Box, center: Point, half: f64) -> (u32, u32) {
-        self.values.clear();
-        let mut smallest = self.largest;
-        for i in parent.start..parent.start + parent.len {
-            let value = self.sources[self.lists[i as usize] as usize].size_at(center, self.gradation);
-            smallest = smallest.min(value);
-            self.values.push(value);
-        }
-        let bound = smallest + 2.0 * self.gradation * half * std::f64::consts::SQRT_2;
-        let start = self.lists.len() as u32;
-        for k in 0..self.values.len() {
-            if self.values[k] <= bound {
-                self.lists.push(self.lists[parent.start as usize + k]);
+impl Box {
+    fn around(sources: &[LocalSource], gradation: f64, start: usize) -> Self {
+        let empty = Self {
+            low: [f64::INFINITY; 2],
+            high: [f64::NEG_INFINITY; 2],
+            size: f64::INFINITY,
+            floor: f64::INFINITY,
+            start: start as u32,
+            end: (start + sources.len()) as u32,
+            second: 0,
+        };
+        sources.iter().fold(empty, |b, s| {
+            let to = [s.from[0] + s.along[0], s.from[1] + s.along[1]];
+            Self {
+                low: [0, 1].map(|k| b.low[k].min(s.from[k]).min(to[k])),
+                high: [0, 1].map(|k| b.high[k].max(s.from[k]).max(to[k])),
+                size: b.size.min(s.size),
+                floor: b.floor.min(s.size - gradation * s.within),
+                ..b
             }
-        }
-        (start, self.lists.len() as u32 - start)
+        })
     }
 }
 

@@ -31,7 +31,7 @@ proptest! {
         let sources = sources.into_iter().map(|(e, size, r)| SizeSource::segment([e[0], e[1]], [e[2], e[3]], size).within(r)).collect();
         let field = SizeField { largest_m: 6.0, gradation, sources, background };
         let grid = Grid::over([[-100.0, -100.0], [100.0, 100.0]].into_iter());
-        let mut index = SizeIndex::new(&field, &grid);
+        let index = SizeIndex::new(&field, &grid);
         for p in points {
             let (indexed, plain) = (index.size(grid.local(p)), field.evaluate_m(p));
             // rounding of distances of up to 300 m
