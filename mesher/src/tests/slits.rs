@@ -14,26 +14,28 @@ fn opened(lines: Vec<Line>) -> (Mesh, usize) {
     (mesh, info.n_slit_nodes)
 }
 
+fn find(root: &[u32], mut i: u32) -> u32 {
+    while root[i as usize] != i {
+        i = root[i as usize];
+    }
+    i
+}
+
 /// Parts that hang together by nodes, and vertices - sides + triangles.
 fn topology(mesh: &Mesh) -> (usize, i64) {
     let mut root: Vec<u32> = (0..mesh.n_corners as u32).collect();
-    fn find(root: &mut [u32], mut i: u32) -> u32 {
-        while root[i as usize] != i {
-            i = root[i as usize];
-        }
-        i
-    }
     let mut sides = BTreeSet::new();
     for t in &mesh.triangles {
         for k in 0..3 {
             let (a, b) = (t[k], t[(k + 1) % 3]);
             sides.insert([a.min(b), a.max(b)]);
-            let (x, y) = (find(&mut root, a), find(&mut root, b));
+            let (x, y) = (find(&root, a), find(&root, b));
             root[x.max(y) as usize] = x.min(y);
         }
     }
     let parts = (0..mesh.n_corners).filter(|&i| root[i] as usize == i).count();
-    (parts, mesh.n_corners as i64 - sides.len() as i64 + mesh.triangles.len() as i64)
+    let count = |n: usize| i64::try_from(n).unwrap();
+    (parts, count(mesh.n_corners) - count(sides.len()) + count(mesh.triangles.len()))
 }
 
 #[track_caller]
