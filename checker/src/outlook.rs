@@ -13,6 +13,7 @@ pub mod cycle;
 pub mod demand_model;
 pub mod evidence;
 pub mod form;
+pub mod from_section;
 pub mod growth;
 pub mod modes;
 pub mod normal;
