@@ -47,6 +47,23 @@ pub(crate) fn unit(a: Point) -> Point {
     if 0.0 < length { [a[0] / length, a[1] / length] } else { [0.0, 0.0] }
 }
 
+/// A unit normal to the left of a straight piece.
+pub(crate) fn left_normal(piece: [Point; 2]) -> Point {
+    let t = unit(sub(piece[1], piece[0]));
+    [-t[1], t[0]]
+}
+
+/// Distance of a point from a straight piece, m.
+pub(crate) fn distance_to(piece: [Point; 2], p: Point) -> f64 {
+    let (v, w) = (sub(piece[1], piece[0]), sub(p, piece[0]));
+    let length = distance(piece[0], piece[1]);
+    if length <= 0.0 {
+        return distance(piece[0], p);
+    }
+    let along = (v[0] * w[0] + v[1] * w[1]) / (length * length);
+    if 0.0 <= along && along <= 1.0 { cross(v, w).abs() / length } else { distance(p, between(piece[0], piece[1], along.clamp(0.0, 1.0))) }
+}
+
 impl CircleArc {
     /// Signed angle from `from` to `to` about the center in rad, positive counterclockwise.
     pub(crate) fn sweep_rad(&self, from: Point, to: Point) -> f64 {

@@ -1,5 +1,5 @@
 //! Whether a deepened hollow still fits into the section.
-use super::arc::{Point, cross, distance, sub};
+use super::arc::{Point, along, cross, distance_to, sub};
 use super::path::Path;
 
 /// Why there is no section at a depth, or no line in it.
@@ -44,21 +44,26 @@ pub enum SectionError {
 const CHORD_RAD: f64 = 0.05;
 /// Nearer than this is touching, m.
 const TOUCHING_M: f64 = 1e-7;
+/// Neighboring pieces that touch with less walk between them than this are short, not in contact, m.
+const TOUCHING_APART_M: f64 = 1e-3;
 /// A crack that starts this near to the surface reaches it, m: the accuracy of a hand-drawn crack.
-const CRACK_AT_SURFACE_M: f64 = 0.05;
+pub(crate) const CRACK_AT_SURFACE_M: f64 = 0.05;
 
 /// Where the surface meets itself, looking only at its pieces `first .. last` against all others.
 pub(crate) fn self_crossing(surface: &Path, first: usize, last: usize) -> Option<Point> {
     let (points, origin) = surface.flattened(CHORD_RAD);
     let piece = |i: usize| [points[i], points[i + 1]];
+    let lengths = Path::straight(points.clone()).lengths_m();
     for i in (0..origin.len()).filter(|&i| first <= origin[i] && origin[i] < last) {
         for j in (0..origin.len()).filter(|j| i.abs_diff(*j) >= 2) {
             let other_is_also_checked = first <= origin[j] && origin[j] < last;
             if other_is_also_checked && j < i {
                 continue;
             }
-            if let Some(at) = meeting(piece(i), piece(j)) {
-                return Some(at);
+            let apart = lengths[i.max(j)] - lengths[i.min(j) + 1];
+            let at = crossing(piece(i), piece(j)).or_else(|| touching(piece(i), piece(j)).filter(|_| TOUCHING_APART_M < apart));
+            if at.is_some() {
+                return at;
             }
         }
     }
@@ -78,26 +83,35 @@ pub(crate) fn crack_to_surface(surface: &Path, first: usize, last: usize, cracks
     })
 }
 
-/// A point in which two straight pieces meet.
+/// A point in which two straight pieces cross or touch.
 fn meeting(a: [Point; 2], b: [Point; 2]) -> Option<Point> {
-    for k in 0..2 {
+    crossing(a, b).or_else(|| touching(a, b))
+}
+
+fn are_apart(a: [Point; 2], b: [Point; 2]) -> bool {
+    (0..2).any(|k| {
         let (low, high) = (a[0][k].min(a[1][k]), a[0][k].max(a[1][k]));
-        if high + TOUCHING_M < b[0][k].min(b[1][k]) || b[0][k].max(b[1][k]) < low - TOUCHING_M {
-            return None;
-        }
+        high + TOUCHING_M < b[0][k].min(b[1][k]) || b[0][k].max(b[1][k]) < low - TOUCHING_M
+    })
+}
+
+/// The point in which two straight pieces cross, each with its ends on both sides of the other.
+fn crossing(a: [Point; 2], b: [Point; 2]) -> Option<Point> {
+    if are_apart(a, b) {
+        return None;
     }
     let (v, w) = (sub(a[1], a[0]), sub(b[1], b[0]));
     let sides = |from: Point, v: Point, ends: [Point; 2]| [cross(v, sub(ends[0], from)), cross(v, sub(ends[1], from))];
     let (of_b, of_a) = (sides(a[0], v, b), sides(b[0], w, a));
-    if of_b[0] * of_b[1] < 0.0 && of_a[0] * of_a[1] < 0.0 {
-        let t = of_a[0] / (of_a[0] - of_a[1]);
-        return Some([a[0][0] + t * v[0], a[0][1] + t * v[1]]);
+    let t = of_a[0] / (of_a[0] - of_a[1]);
+    (of_b[0] * of_b[1] < 0.0 && of_a[0] * of_a[1] < 0.0).then(|| along(a[0], v, t))
+}
+
+/// The end of one straight piece that lies on the other.
+fn touching(a: [Point; 2], b: [Point; 2]) -> Option<Point> {
+    if are_apart(a, b) {
+        return None;
     }
-    let touches = |p: Point, piece: [Point; 2]| {
-        let path = Path::straight(piece.to_vec());
-        let (at, d) = path.nearest(p);
-        (d <= TOUCHING_M).then(|| path.point(at))
-    };
-    let found = touches(a[0], b).or_else(|| touches(a[1], b)).or_else(|| touches(b[0], a)).or_else(|| touches(b[1], a));
-    found.filter(|_| distance(a[0], a[1]) > 0.0)
+    let on = |p: Point, piece: [Point; 2]| (distance_to(piece, p) <= TOUCHING_M).then_some(p);
+    on(a[0], b).or_else(|| on(a[1], b)).or_else(|| on(b[0], a)).or_else(|| on(b[1], a))
 }

@@ -8,8 +8,8 @@ use crate::model::Growth;
 pub(crate) const SAME_DEPTH_M: f64 = 1e-9;
 /// Pieces shorter than this vanish, m.
 const SAME_POINT_M: f64 = 1e-9;
-/// Share of its surveyed width to which the seaward part shrinks before everything shrinks together, where roof or floor pass
-/// the levels of lip and mouth: shrinking it to nothing would fold the roof against the face.
+/// Share of its surveyed width to which the seaward part shrinks before everything shrinks together, where the walk from mouth
+/// to lip goes down anywhere: shrinking it to nothing would fold the roof against the face or itself.
 const LEAST_SEAWARD_SHARE: f64 = 0.1;
 
 /// The reference hollow, walked from mouth to lip, and its way of growing.
@@ -21,8 +21,8 @@ pub(crate) struct Hollow {
     height_m: f64,
     /// Width of the landward part that "advance" moves as it is.
     moved_m: f64,
-    /// Whether roof or floor pass the levels of lip and mouth.
-    exceeds: bool,
+    /// Whether the walk from mouth to lip goes down anywhere: shrinking its seaward part to nothing would fold it.
+    folds: bool,
 }
 
 impl Hollow {
@@ -33,8 +33,8 @@ impl Hollow {
         let levels = || points.iter().map(|p| p[1]);
         let (low, high) = (levels().fold(f64::INFINITY, f64::min), levels().fold(f64::NEG_INFINITY, f64::max));
         let depth_m = reference.largest_x_m() - lip[0];
-        let exceeds = lip[1] + 1e-9 < high || low < points[0][1] - 1e-9;
-        Self { growth, depth_m, height_m: high - low, moved_m: (high - low).min(0.5 * depth_m), exceeds, reference }
+        let folds = points.windows(2).any(|pair| pair[1][1] + 1e-9 < pair[0][1]);
+        Self { growth, depth_m, height_m: high - low, moved_m: (high - low).min(0.5 * depth_m), folds, reference }
     }
 
     /// The reference hollow.
@@ -78,7 +78,7 @@ impl Hollow {
         let seaward = self.depth_m - self.moved_m;
         let least = match self.growth {
             Growth::Stretch => return if self.depth_m < depth_m { self.stretch(depth_m) } else { self.shrunk(&self.reference, depth_m) },
-            Growth::Advance if self.exceeds => LEAST_SEAWARD_SHARE,
+            Growth::Advance if self.folds => LEAST_SEAWARD_SHARE,
             Growth::Advance => 0.0,
         };
         let smallest = self.moved_m + least * seaward;

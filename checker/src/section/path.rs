@@ -112,6 +112,13 @@ impl Path {
             .collect()
     }
 
+    /// The place at a length from the start; `lengths_m` as given by [`Self::lengths_m`].
+    pub(crate) fn at_length(&self, lengths_m: &[f64], at_m: f64) -> OnPath {
+        let segment = lengths_m.partition_point(|length| *length <= at_m).clamp(1, self.n_segments()) - 1;
+        let length = lengths_m[segment + 1] - lengths_m[segment];
+        OnPath { segment, share: if 0.0 < length { ((at_m - lengths_m[segment]) / length).clamp(0.0, 1.0) } else { 0.0 } }
+    }
+
     /// The place nearest to `p` and its distance in m.
     pub fn nearest(&self, p: [f64; 2]) -> (OnPath, f64) {
         let mut best = (OnPath { segment: 0, share: 0.0 }, f64::INFINITY);

@@ -1,6 +1,8 @@
 //! Models and shapes that the tests of this module share.
+mod bodies;
 mod growth;
 mod hand;
+mod places;
 
 use super::{Section, Site};
 use crate::diagnostic::Diagnostic;
