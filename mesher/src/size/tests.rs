@@ -20,7 +20,7 @@ fn size_grows_by_the_gradation_from_the_reach_of_a_source() {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(64))]
+    #![proptest_config(ProptestConfig { cases: 64, failure_persistence: None, ..ProptestConfig::default() })]
     #[test]
     fn index_agrees_with_trying_every_source(
         sources in prop::collection::vec((prop::array::uniform4(-100.0..100.0_f64), 0.01..5.0_f64, 0.0..4.0_f64), 1..60),

@@ -3,6 +3,8 @@ use crate::geometry::orient;
 use proptest::prelude::*;
 
 proptest! {
+    #![proptest_config(ProptestConfig { failure_persistence: None, ..ProptestConfig::default() })]
+
     /// Exact arithmetic: 33 + 20 bits fit a double.
     #[test]
     fn lattice_points_are_exactly_collinear(
