@@ -21,8 +21,6 @@ mod site;
 mod start;
 mod strata;
 mod undercut;
-mod standin;
-pub use standin::{FreeBody, Place, PlaceKind, tags};
 
 pub use arc::CircleArc;
 pub use body::{ContactPiece, Section};
