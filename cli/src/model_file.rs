@@ -1,7 +1,7 @@
 //! The model file: text to the checked model, every fault of it in one pass, each with its place.
 //!
 //! ```text
-//! path ──► files: bytes, text ──► syntax: tree with places ──► walk: by the table of keys ──► build: Model ──► checker::model::check
+//! path ──► files: bytes, text ──► syntax: tree with places ──► walk: by the table of keys ──► build: Model ──► checker::model::check, checker::section
 //! ```
 //!
 //! `keys` is the one table of all keys; reading, `schema` and `reference` follow it.
@@ -23,7 +23,7 @@ pub use schema::json_schema;
 
 use crate::diagnostics::{Findings, Source};
 use build::Build;
-use checker::diagnostic::Diagnostic;
+use checker::diagnostic::{Diagnostic, Severity};
 use checker::model::{Groundwater, Model, SeaLevel};
 use collect::{Collector, Places};
 use files::FileFault;
@@ -134,6 +134,11 @@ fn read_all(text: &str, name: &str, folder: &Path) -> Reading {
     model.defaults_used = with_effect(defaults_used, &model);
     for diagnostic in checker::model::check(&model) {
         collector.add(diagnostic);
+    }
+    if !collector.has_faults() {
+        // The section is only tried on a sound model. Its warnings come with the analysis.
+        let faults = checker::section::Site::new(&model).err().unwrap_or_default();
+        faults.into_iter().filter(|fault| fault.severity == Severity::Error).for_each(|fault| collector.add(fault));
     }
     let (findings, places) = collector.finish();
     Reading { model: Some(model), findings, places, extra_files, unreadable }

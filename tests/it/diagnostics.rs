@@ -332,6 +332,7 @@ fn the_page_about_the_model_file_lists_every_code() {
         root.join("cli/src/model_file"),
         root.join("cli/src/survey_csv.rs"),
         root.join("checker/src/model"),
+        root.join("checker/src/section"),
     ];
     while let Some(path) = open.pop() {
         if path.is_dir() {

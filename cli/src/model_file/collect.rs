@@ -102,6 +102,13 @@ impl Collector {
         text[start..].starts_with('[') && self.broken_lines.iter().any(|line| start <= line.start && line.start < end)
     }
 
+    /// Whether something is wrong, beside keys that are only not available yet.
+    pub(crate) fn has_faults(&self) -> bool {
+        self.list
+            .iter()
+            .any(|one| one.diagnostic.severity == checker::diagnostic::Severity::Error && one.diagnostic.code != "key.not-available")
+    }
+
     /// Number of errors so far.
     pub(crate) fn n_errors(&self) -> usize {
         self.list.iter().filter(|one| one.diagnostic.severity == checker::diagnostic::Severity::Error).count()
