@@ -1,8 +1,9 @@
 //! Consistent node loads of the unit load cases on a mesh.
 use std::cell::{Cell, RefCell};
 
-use fem_core::assembly::{body_force, edge_traction, initial_stress};
+use fem_core::assembly::{body_force_of, edge_traction, initial_stress_of};
 use fem_core::mesh::{Mesh, TaggedEdge};
+use fem_core::quadrature::TRIANGLE_DEGREE_4;
 use fem_core::supports::Supports;
 
 use super::in_situ::{body_force_n_per_m3, in_situ_pa, surcharge_traction_pa};
@@ -27,24 +28,28 @@ pub fn supports(mesh: &Mesh) -> Supports {
 
 /// Load vectors of all unit load cases, shape `[n_cases][2 * n_nodes]`, N/m.
 pub fn unit_loads(model: &Model, section: &Section, mesh: &Mesh, cases: &CaseSet) -> Vec<Vec<f64>> {
-    let overburden = Overburden::new(section);
+    let overburden = Overburden::new(section, mesh);
     cases.cases.iter().map(|&case| unit_load(model, section, mesh, case, &overburden)).collect()
 }
 
 fn unit_load(model: &Model, section: &Section, mesh: &Mesh, case: LoadCase, overburden: &Overburden<'_>) -> Vec<f64> {
-    let layer = |element: usize| mesh.regions[element] as usize;
-    if surcharge_traction_pa(case).is_some() {
-        return surcharge_load(model, section, mesh, case);
-    }
-    let mut load = body_force(mesh, &|element, _| body_force_n_per_m3(case, layer(element)));
-    if matches!(case, LoadCase::Weight { .. } | LoadCase::Horizontal { .. }) {
-        overburden.rewind();
-        let stress = initial_stress(mesh, &|element, point| overburden.with(point, |t| in_situ_pa(case, layer(element), t)));
-        for (sum, add) in load.iter_mut().zip(stress) {
-            *sum += add;
+    let of_layer = |layer: usize| (0..mesh.triangles.len() as u32).filter(move |&t| mesh.regions[t as usize] as usize == layer);
+    let stress = |elements: &mut dyn Iterator<Item = u32>| {
+        initial_stress_of(mesh, &|t, point| overburden.with(t, point, |h| in_situ_pa(case, mesh.regions[t] as usize, h)), elements)
+    };
+    match case {
+        LoadCase::Surcharge { .. } | LoadCase::SurchargeSeaward { .. } => surcharge_load(model, section, mesh, case),
+        LoadCase::Horizontal { layer, .. } => stress(&mut of_layer(layer)),
+        LoadCase::Weight { layer } | LoadCase::Seaward { layer } | LoadCase::Upward { layer } => {
+            let mut load = body_force_of(mesh, &|_, _| body_force_n_per_m3(case, layer), of_layer(layer));
+            if matches!(case, LoadCase::Weight { .. }) {
+                for (sum, add) in load.iter_mut().zip(stress(&mut (0..mesh.triangles.len() as u32))) {
+                    *sum += add;
+                }
+            }
+            load
         }
     }
-    load
 }
 
 /// Body force of a state on a layer, N/m3: weight less its uplift, and drag toward the sea.
@@ -94,33 +99,35 @@ fn surcharge_load(model: &Model, section: &Section, mesh: &Mesh, case: LoadCase)
     })
 }
 
-/// Overburden at the integration points, computed for the first load case and reused: every case asks for the same points in the
-/// same order.
+/// Overburden at the integration points, computed when first asked for and reused by every load case.
 struct Overburden<'a> {
     section: &'a Section,
     n_layers: usize,
-    next: Cell<usize>,
+    /// Element and number of the point last asked for: the points of an element are asked for in the same order every time.
+    last: Cell<(usize, usize)>,
     stored_m: RefCell<Vec<f64>>,
 }
 
+/// Integration points of an element.
+const POINTS: usize = TRIANGLE_DEGREE_4.len();
+
 impl<'a> Overburden<'a> {
-    fn new(section: &'a Section) -> Self {
-        Self { section, n_layers: section.n_layers(), next: Cell::new(0), stored_m: RefCell::new(Vec::new()) }
+    fn new(section: &'a Section, mesh: &Mesh) -> Self {
+        let n_layers = section.n_layers();
+        let stored_m = RefCell::new(vec![f64::NAN; mesh.triangles.len() * POINTS * n_layers]);
+        Self { section, n_layers, last: Cell::new((usize::MAX, 0)), stored_m }
     }
 
-    fn rewind(&self) {
-        self.next.set(0);
-    }
-
-    fn with(&self, point: [f64; 2], use_it: impl FnOnce(&[f64]) -> [f64; 3]) -> [f64; 3] {
-        let start = self.next.get();
-        let end = start + self.n_layers;
-        self.next.set(end);
+    fn with(&self, element: usize, point: [f64; 2], use_it: impl FnOnce(&[f64]) -> [f64; 3]) -> [f64; 3] {
+        let (last, k) = self.last.get();
+        let k = if last == element && k + 1 < POINTS { k + 1 } else { 0 };
+        self.last.set((element, k));
+        let start = (element * POINTS + k) * self.n_layers;
         let mut stored = self.stored_m.borrow_mut();
-        if stored.len() < end {
-            stored.resize(end, 0.0);
-            self.section.overburden_into(point, &mut stored[start..end]);
+        let row = &mut stored[start..start + self.n_layers];
+        if row[0].is_nan() {
+            self.section.overburden_into(point, row);
         }
-        use_it(&stored[start..end])
+        use_it(row)
     }
 }

@@ -43,6 +43,8 @@ pub struct Stress {
     pub cases: CaseSet,
     /// Node displacements of each load case, m, shape `[n_cases][2 * n_nodes]`.
     pub displacements_m: Vec<Vec<f64>>,
+    /// Node loads of each load case, N/m, shape `[n_cases][2 * n_nodes]`.
+    pub loads_n_per_m: Vec<Vec<f64>>,
     /// Quality.
     pub quality: SolveQuality,
     /// Recovered `D eps(u)` in Pa, node by node, three components a load case: `[node][case][3]`.
@@ -95,7 +97,7 @@ impl Stress {
             unknowns: system.info().n_unknowns,
             elements: mesh.triangles.len(),
             residual,
-            pivot_ratio: 0.0,
+            pivot_ratio: system.info().pivot_ratio,
             smallest_angle_rad,
         };
         let locator = Locator::new(&mesh);
@@ -104,6 +106,7 @@ impl Stress {
             materials,
             cases: cases.clone(),
             displacements_m,
+            loads_n_per_m: loads,
             quality,
             recovered_pa,
             recovery,

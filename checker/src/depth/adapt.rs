@@ -17,7 +17,7 @@ use fem_core::tensor::{major, minor};
 use mesher::{MeshParams, SizeField, SizeSource};
 
 use super::geometry::Geometry;
-use super::record::Context;
+use super::record::{Context, PROBE_FLOOR};
 use crate::analysis::samples::Weighted;
 use crate::analysis::{AnalysisError, Stress};
 use crate::demand::{Evaluation, Found, InputCase, place_utilization};
@@ -92,7 +92,7 @@ pub fn next_sizes(
         let coefficients = stress.cases.coefficients(ctx.model, &worst.state);
         let primal = energy_error(stress, &stress.displacements_of(&coefficients), &stress.recovered_of(&coefficients));
         let mut duals = dual_loads(stress, geometry, evaluation, &headline);
-        duals.extend(probe_loads(stress, geometry, &coefficients, section));
+        duals.extend(probe_loads(ctx, stress, geometry, (&coefficients, section)));
         for z in stress.solve_loads(&duals)? {
             let dual = energy_error(stress, &z, &stress.recover(&z));
             for ((e, p), d) in errors.iter_mut().zip(&primal).zip(dual) {
@@ -128,10 +128,10 @@ fn dual_loads(stress: &Stress, geometry: &Geometry, evaluation: &Evaluation<'_>,
 }
 
 /// One load vector a probe: all components of its stress together, relative to its size.
-fn probe_loads(stress: &Stress, geometry: &Geometry, coefficients: &[f64], section: &Section) -> Vec<Vec<f64>> {
+fn probe_loads(ctx: &Context<'_>, stress: &Stress, geometry: &Geometry, (coefficients, section): (&[f64], &Section)) -> Vec<Vec<f64>> {
     let load = |(samples, layer): &(Vec<Weighted>, usize)| {
         let tensor = crate::analysis::load_cases::superpose(coefficients, &stress.mean_pa(section, samples, *layer));
-        let size = major(tensor).abs().max(minor(tensor).abs());
+        let size = major(tensor).abs().max(minor(tensor).abs()).max(PROBE_FLOOR * ctx.overburden_scale_pa());
         functional(stress, samples, *layer, [1.0 / size; 3])
     };
     geometry.probes.iter().flatten().map(load).collect()

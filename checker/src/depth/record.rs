@@ -21,6 +21,9 @@ const FEWEST_MESHES: usize = 2;
 /// Most meshes.
 const MOST_MESHES: usize = 5;
 
+/// A probe's error counts relative to its own stress, but to no less than this share of the weight of the cliff's height.
+pub const PROBE_FLOOR: f64 = 0.02;
+
 /// What is the same at every depth.
 #[derive(Debug)]
 pub struct Context<'a> {
@@ -42,6 +45,14 @@ pub struct Context<'a> {
     pub averaging_length_m: f64,
     /// Largest mesh.
     pub budget: Budget,
+}
+
+impl Context<'_> {
+    /// Weight of a column of the cliff's height, Pa: the size that stresses are judged by.
+    pub fn overburden_scale_pa(&self) -> f64 {
+        let heaviest = self.model.rocks.iter().map(|r| r.unit_weight_n_per_m3.mean()).fold(0.0, f64::max);
+        heaviest * self.site.cliff_height_m()
+    }
 }
 
 /// Everything kept of one depth.
@@ -246,7 +257,7 @@ fn probe_change(ctx: &Context<'_>, now: &[Vec<[f64; 3]>], before: &[Vec<[f64; 3]
         let c = ctx.cases.coefficients(ctx.model, &mean_state(ctx, situation));
         for (a, b) in now.iter().zip(before).filter(|(a, _)| !a.is_empty()) {
             let (a, b) = (superpose(&c, a), superpose(&c, b));
-            let size = major(a).abs().max(minor(a).abs());
+            let size = major(a).abs().max(minor(a).abs()).max(PROBE_FLOOR * ctx.overburden_scale_pa());
             let change = (0..3).map(|k| (a[k] - b[k]).abs()).fold(0.0, f64::max);
             worst = worst.max(change / size);
         }

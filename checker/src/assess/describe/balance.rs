@@ -5,7 +5,7 @@ use fem_core::stress::raw_stress_pa;
 use super::{Context, CutResult, Record, Section, Stress};
 use crate::analysis::in_situ::in_situ_of_state;
 use crate::analysis::load_cases::State;
-use crate::analysis::loads::{body_force_of_state, ground_edges, supports, surcharge_ends_m, traction_of_state, unit_loads};
+use crate::analysis::loads::{body_force_of_state, ground_edges, supports, surcharge_ends_m, traction_of_state};
 use crate::depth::{line_value, rupture_line};
 use crate::model::Cut;
 use fem_core::system::Problem;
@@ -67,9 +67,8 @@ impl<'a> Loaded<'a> {
 /// Weight of the section and its vertical reaction, N/m.
 pub(super) fn weight_and_reaction(ctx: &Context<'_>, section: &Section, stress: &Stress, state: &State) -> (f64, f64) {
     let loaded = Loaded::new(ctx, section, stress, state);
-    let loads = unit_loads(ctx.model, section, &stress.mesh, &ctx.cases);
     let mut load = vec![0.0; loaded.displacements_m.len()];
-    for (c, unit) in loaded.coefficients.iter().zip(&loads) {
+    for (c, unit) in loaded.coefficients.iter().zip(&stress.loads_n_per_m) {
         for (sum, f) in load.iter_mut().zip(unit) {
             *sum += c * f;
         }
