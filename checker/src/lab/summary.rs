@@ -76,6 +76,7 @@ pub fn summarize(results: &LabResults) -> Checked<LabSummary> {
     reservations::shear(&usable, &summary, &mut warnings);
     reservations::own_fits(results, &mut warnings);
     reservations::outliers(&summary, &mut warnings);
+    reservations::scatter(&summary, &mut warnings);
     reservations::size(results, &summary, &mut warnings);
     Checked { value: summary, warnings }
 }

@@ -7,6 +7,13 @@ mod rows;
 
 use columns::Columns;
 
+/// Names of all columns, numbers without the ending that gives their unit, and the endings.
+#[cfg(test)]
+pub(super) fn column_names() -> Vec<(&'static str, Vec<&'static str>)> {
+    let texts = columns::TEXTS.iter().map(|text| (*text, Vec::new()));
+    texts.chain(columns::NUMBERS.iter().map(|(base, quantity)| (*base, quantity.suffixes()))).collect()
+}
+
 /// Reads all rows; findings are added to `findings`, errors among them void the result.
 pub(super) fn read(text: &str, findings: &mut Vec<Diagnostic>) -> LabResults {
     let mut results = LabResults::default();

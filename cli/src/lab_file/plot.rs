@@ -38,7 +38,10 @@ impl Frame {
 pub fn svg(summary: &LabSummary, title: &str) -> Result<Option<String>, StrengthError> {
     let fits = fits(summary);
     let largest = |value: fn(&checker::lab::Point) -> f64| fits.iter().flat_map(|(_, f)| &f.points).map(value).fold(0.0, f64::max);
-    let frame = Frame { normal_pa: round_up(largest(|p| p.normal_pa)), shear_pa: round_up(largest(|p| p.shear_pa)) };
+    let frame = Frame {
+        normal_pa: round_up(largest(|p| p.normal_pa)),
+        shear_pa: round_up(largest(|p| p.shear_pa) * (1.1 + 0.05 * fits.len() as f64)),
+    };
     if fits.is_empty() || frame.normal_pa <= 0.0 {
         return Ok(None);
     }
@@ -55,6 +58,9 @@ pub fn svg(summary: &LabSummary, title: &str) -> Result<Option<String>, Strength
         draw(&mut out, &frame, fit, COLORS[i % COLORS.len()])?;
         legend(&mut out, i, what, fit);
     }
+    let y = legend_y(fits.len());
+    let note = "dashed: carried beyond the tests; dotted: one more stage lies above with 95 %";
+    let _ = writeln!(out, "<text x=\"{:.1}\" y=\"{y:.1}\" fill=\"#555\">{note}</text>", LEFT + 24.0);
     out.push_str("</svg>\n");
     Ok(Some(out))
 }
@@ -116,8 +122,12 @@ fn draw(out: &mut String, frame: &Frame, fit: &Fit, color: &str) -> Result<(), S
     Ok(())
 }
 
+fn legend_y(i: usize) -> f64 {
+    TOP + 16.0 + 18.0 * i as f64
+}
+
 fn legend(out: &mut String, i: usize, what: &str, fit: &Fit) {
-    let y = TOP + 16.0 + 18.0 * i as f64;
+    let y = legend_y(i);
     let color = COLORS[i % COLORS.len()];
     let (c, phi) = (fit.cohesion_pa / 1e3, fit.friction_angle_rad().to_degrees());
     let _ = writeln!(out, "<circle cx=\"{:.1}\" cy=\"{:.1}\" r=\"4\" fill=\"{color}\"/>", LEFT + 14.0, y - 4.0);

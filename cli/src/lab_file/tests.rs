@@ -2,8 +2,10 @@
 use super::*;
 use checker::model::{TestedState, Uncertain};
 
+mod abuse;
 mod ags_files;
 mod csv_files;
+mod documented;
 mod in_a_model;
 mod outputs;
 

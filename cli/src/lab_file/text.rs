@@ -110,7 +110,8 @@ pub(super) fn normal_range(fit: &Fit) -> (f64, f64) {
 }
 
 fn kpa(pa: f64) -> String {
-    format!("{:.1}", pa / 1e3)
+    // Adding 0.0 turns the -0.0 of a rounded small negative number into 0.0.
+    format!("{:.1}", (pa / 1e2).round() / 10.0 + 0.0)
 }
 
 fn sample_line(out: &mut String, what: &str, sample: &Sample, (unit, unit_name): (f64, &str)) {

@@ -11,6 +11,15 @@ const OWN_FIT_COHESION: f64 = 0.10;
 const OWN_FIT_ANGLE_RAD: f64 = 2.0 * std::f64::consts::PI / 180.0;
 /// Diameter up to which the size law of uniaxial strength was tested, m (Hoek & Brown 1980, from memory).
 const SIZE_LAW_LIMIT_M: f64 = 0.2;
+/// Least coefficients of variation within one rock that compilations give.
+struct LeastCov {
+    tensile: f64,
+    uniaxial: f64,
+    cohesion: f64,
+}
+
+/// K. K. Phoon, F. H. Kulhawy, Can. Geotech. J. 36 (1999) and later compilations: 15-40 % for strengths of rock, 10-50 % for c' (from memory).
+const LEAST_PUBLISHED_COV: LeastCov = LeastCov { tensile: 0.15, uniaxial: 0.15, cohesion: 0.10 };
 /// Least length over diameter of a uniaxial specimen. ISRM suggested method (1979) asks for 2.5 to 3, ASTM D7012 for 2 to 2.5 (from memory).
 const LEAST_SLENDERNESS: f64 = 2.0;
 
@@ -136,6 +145,23 @@ pub(super) fn outliers(summary: &LabSummary, warnings: &mut Vec<Diagnostic>) {
             );
             warnings.push(Diagnostic::warning("lab.outlier", "direct shear", message).hint(HINT));
         }
+    }
+}
+
+/// Names strengths that scatter less than half of the least published coefficient of variation.
+pub(super) fn scatter(summary: &LabSummary, warnings: &mut Vec<Diagnostic>) {
+    let cov_of = |v: &Option<Value>| v.as_ref().and_then(|v| v.sample.cov());
+    let cohesion = summary.peak.as_ref().filter(|f| 0.0 < f.cohesion_pa).map(|f| f.predictive().0 / f.cohesion_pa);
+    let found = [
+        ("tensile strength", cov_of(&summary.tensile), LEAST_PUBLISHED_COV.tensile),
+        ("uniaxial strength", cov_of(&summary.uniaxial), LEAST_PUBLISHED_COV.uniaxial),
+        ("cohesion", cohesion, LEAST_PUBLISHED_COV.cohesion),
+    ];
+    for (what, cov, published) in found {
+        let Some(cov) = cov.filter(|cov| *cov < 0.5 * published) else { continue };
+        let message = format!("{what} scatters by {:.1} % only; published values start at {:.0} %", 100.0 * cov, 100.0 * published);
+        let hint = "specimens of one block do not show how the rock varies along the cliff; widen `cov` by judgment";
+        warnings.push(Diagnostic::warning("lab.small-scatter", "the file", message).hint(hint));
     }
 }
 

@@ -24,6 +24,16 @@ fn clean_results_draw_only_the_size_effect() {
 }
 
 #[test]
+fn scatter_of_one_block_is_not_that_of_the_rock() {
+    let mut results = d08_results();
+    not_said(&results, "lab.small-scatter");
+    results.tensile = strengths(&[2.1, 2.12, 2.08, 2.11]);
+    let found = said(&results, "lab.small-scatter");
+    // Mean 2.1025, squares 0.00000625 + 0.00030625 + 0.00050625 + 0.00005625 by hand: s = 0.01708, 0.8 %.
+    assert_eq!(found.message, "tensile strength scatters by 0.8 % only; published values start at 15 %");
+}
+
+#[test]
 fn undrained_and_remade_specimens_stay_out_of_the_fit() {
     let mut results = d08_results();
     let mut undrained = stage(20, 100.0, 300.0);
