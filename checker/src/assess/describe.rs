@@ -24,8 +24,8 @@ impl Run<'_> {
     pub(super) fn describe(&self, mut solved: Vec<Solved>) -> Result<Assessment, AssessError> {
         let model: &Model = &self.prepared.model;
         let surveyed_m = self.prepared.site.surveyed_depth_m();
-        let critical_depths =
-            (self.scope != Scope::Check).then(|| critical_depths(model, &solved, surveyed_m, self.prepared.averaging_length_m));
+        let critical_depths = (self.scope != Scope::Check)
+            .then(|| critical_depths(model, &solved, surveyed_m, self.prepared.averaging_length_m));
         let hangs_on = match (&critical_depths, self.scope) {
             (Some(c), Scope::Assess) => self.hangs_on(&solved, c.best_estimate.depth_m)?,
             _ => Vec::new(),
@@ -120,8 +120,7 @@ impl Run<'_> {
             keep_out_m: below.keep_out_m.unwrap_or(1.5 * height),
             basis: below.basis.clone().unwrap_or_else(|| match below.keep_out_m {
                 Some(_) => "given in the model without a basis".to_owned(),
-                None => "DEFAULT: 1.5 x cliff height, a width used by a coastal agency for falls of soft limestone; not calculated here"
-                    .to_owned(),
+                None => "DEFAULT: 1.5 x cliff height, a width used by a coastal agency for falls of soft limestone; not calculated here".to_owned(),
             }),
         }
     }

@@ -86,11 +86,9 @@ pub fn next_sizes(
         Headline::Cautious => InputCase::Cautious,
         Headline::BestEstimate => InputCase::BestEstimate,
     };
-    let headline: Vec<&Found> =
-        found.iter().filter(|f| f.inputs == inputs && f.index < geometry.places.len() && f.kind.is_local()).collect();
+    let headline: Vec<&Found> = found.iter().filter(|f| f.inputs == inputs && f.index < geometry.places.len() && f.kind.is_local()).collect();
     let mut errors = vec![0.0; stress.mesh.triangles.len()];
-    if let Some(worst) = headline.iter().max_by(|a, b| a.result.utilization.unwrap_or(0.0).total_cmp(&b.result.utilization.unwrap_or(0.0)))
-    {
+    if let Some(worst) = headline.iter().max_by(|a, b| a.result.utilization.unwrap_or(0.0).total_cmp(&b.result.utilization.unwrap_or(0.0))) {
         let coefficients = stress.cases.coefficients(ctx.model, &worst.state);
         let primal = energy_error(stress, &stress.displacements_of(&coefficients), &stress.recovered_of(&coefficients));
         let mut duals = dual_loads(stress, geometry, evaluation, &headline);
@@ -182,9 +180,7 @@ pub fn same_sizes(section: &Section, mesh: &Mesh, averaging_length_m: f64) -> Si
 /// Wanted size at the centroid of every triangle, m.
 fn wanted_sizes(stress: &Stress, errors: &[f64]) -> Vec<([f64; 2], f64)> {
     let largest = errors.iter().copied().fold(0.0, f64::max);
-    let change = |error: f64, tau: f64| {
-        if 0.0 < error { (tau / error).powf(1.0 / 6.0).clamp(SIZE_CHANGE[0], SIZE_CHANGE[1]) } else { SIZE_CHANGE[1] }
-    };
+    let change = |error: f64, tau: f64| if 0.0 < error { (tau / error).powf(1.0 / 6.0).clamp(SIZE_CHANGE[0], SIZE_CHANGE[1]) } else { SIZE_CHANGE[1] };
     let count = |tau: f64| errors.iter().map(|&e| change(e, tau).powi(-2)).sum::<f64>();
     // tau by bisection on its logarithm: the count falls as tau grows
     let target = GROWTH * errors.len() as f64;

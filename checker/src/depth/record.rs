@@ -121,8 +121,7 @@ pub fn record_on(ctx: &Context<'_>, depth_m: f64, like: &Record) -> Result<Recor
     let section = ctx.site.at_depth(depth_m)?;
     let geometry = Geometry::new(&section, ctx.averaging_length_m, &[]);
     let same_body = section.extents() == like.section.extents();
-    let mesh =
-        if same_body { like.mesh.clone() } else { make_mesh(&section, &same_sizes(&section, &like.mesh.0, ctx.averaging_length_m))? };
+    let mesh = if same_body { like.mesh.clone() } else { make_mesh(&section, &same_sizes(&section, &like.mesh.0, ctx.averaging_length_m))? };
     let stress = Stress::solve(ctx.model, &section, mesh.0.clone(), mesh.1, &ctx.cases)?;
     let mut record = sampled(ctx, &section, &geometry, &stress, mesh);
     record.found = evaluate_record(ctx, &record, &[InputCase::BestEstimate]);

@@ -1,7 +1,7 @@
 //! Probes, cuts, rupture traces and the three ways to the section forces at one depth.
 use super::{
-    CheckKind, Context, CutResult, Feature, Found, InputCase, LineValue, ProbeResult, Record, Section, Stress, StressKpa, Zero,
-    line_between, line_value, mean_state,
+    CheckKind, Context, CutResult, Feature, Found, InputCase, LineValue, ProbeResult, Record, Section, Stress, StressKpa, Zero, line_between,
+    line_value, mean_state,
 };
 use fem_core::tensor::{major, minor, principal};
 
@@ -81,8 +81,7 @@ fn probe_result(
         (Some(direction), Some(length)) => on_segment(probe.at_m, direction, length),
         _ => vec![(probe.at_m, 1.0)],
     };
-    let middle =
-        probe.toward.zip(probe.over_m).map_or(probe.at_m, |(d, l)| [probe.at_m[0] + 0.5 * l * d[0], probe.at_m[1] + 0.5 * l * d[1]]);
+    let middle = probe.toward.zip(probe.over_m).map_or(probe.at_m, |(d, l)| [probe.at_m[0] + 0.5 * l * d[0], probe.at_m[1] + 0.5 * l * d[1]]);
     let layer = section.layer_at(middle);
     let tensor = crate::analysis::load_cases::superpose(coefficients, &stress.mean_pa(section, &samples, layer));
     result.stress_kpa = Some(in_kpa(ctx, section, tensor, (probe.at_m, layer), state));

@@ -16,11 +16,8 @@ fn the_shown_output_is_that_of_the_shown_file() {
     let summary = summary(&file.results, None).unwrap();
     let printed = text::summary(&summary.value).unwrap();
     let table = rock_table("rock", "tern-lab.csv", &summary.value);
-    let warnings: String = summary
-        .warnings
-        .iter()
-        .map(|w| format!("warning: tern-lab.csv: {}: {}\n  hint: {}\n", w.at, w.message, w.hint.as_deref().unwrap_or("")))
-        .collect();
+    let line = |w: &Diagnostic| format!("warning: tern-lab.csv: {}: {}\n  hint: {}\n", w.at, w.message, w.hint.as_deref().unwrap_or(""));
+    let warnings = summary.warnings.iter().map(line).collect::<Vec<_>>().concat();
     assert_eq!(
         block("console", 0),
         format!("$ brinkline lab tern-lab.csv\n{warnings}tern-lab.csv (CSV)\n\n{printed}rock table for a model file:\n\n{table}")
