@@ -93,6 +93,9 @@ impl Iterator for Lines<'_> {
 
 /// The fields of one line; quotes are taken off. A surface has no fields with line breaks.
 fn fields(line: &str) -> Vec<String> {
+    if !line.contains('"') {
+        return line.split(',').map(|field| field.trim().to_owned()).collect();
+    }
     let mut reader = csv::ReaderBuilder::new().has_headers(false).flexible(true).trim(csv::Trim::All).from_reader(line.as_bytes());
     match reader.records().next() {
         Some(Ok(record)) => record.iter().map(str::to_owned).collect(),

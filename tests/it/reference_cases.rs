@@ -30,12 +30,15 @@ fn model_text(case: &Value, target_error: f64) -> String {
     for layer in layers {
         let (e, nu, gamma) = (layer["E"].as_f64().unwrap(), layer["nu"].as_f64().unwrap(), layer["gamma"].as_f64().unwrap());
         let k0 = spec["K0"]["K0"].as_f64().unwrap_or(nu / (1.0 - nu));
-        writeln!(t, "[rocks.{}]\nunit_weight_kn_m3 = {gamma}\nyoungs_modulus_mpa = {}\npoissons_ratio = {nu}", layer["name"], e / 1e3).unwrap();
-        writeln!(t, "k0 = {k0}\nstrength_basis = \"rock mass\"\ntensile_strength_kpa = 500\ncohesion_kpa = 900\nfriction_angle_deg = 35").unwrap();
+        writeln!(t, "[rocks.{}]\nunit_weight_kn_m3 = {gamma}\nyoungs_modulus_mpa = {}\npoissons_ratio = {nu}", layer["name"], e / 1e3)
+            .unwrap();
+        writeln!(t, "k0 = {k0}\nstrength_basis = \"rock mass\"\ntensile_strength_kpa = 500\ncohesion_kpa = 900\nfriction_angle_deg = 35")
+            .unwrap();
     }
     situation(&mut t, spec);
     writeln!(t, "[undercut]\nsetting = \"straight cliff\"\ngrowth = \"advance\"").unwrap();
-    writeln!(t, "search_to_depth_m = {depth:?}\ndepth_step_m = {depth:?}\nfloor_level_m = 0.0\nroof_level_m = {slot:?}\nback = \"round\"").unwrap();
+    writeln!(t, "search_to_depth_m = {depth:?}\ndepth_step_m = {depth:?}\nfloor_level_m = 0.0\nroof_level_m = {slot:?}\nback = \"round\"")
+        .unwrap();
     writeln!(t, "[checks]\naveraging_length_m = 0.5\ntarget_error = {target_error}").unwrap();
     writeln!(t, "[extent]\nseaward_x_m = -{sea}\nlandward_x_m = {land}\nbase_z_m = -{below}").unwrap();
     for (name, point) in spec["points_s"].as_object().unwrap() {
@@ -60,7 +63,14 @@ fn situation(t: &mut String, spec: &Value) {
         writeln!(t, "inertia_seaward = {kh}").unwrap();
     }
     if let Some(load) = spec["surcharge"].get(0) {
-        writeln!(t, "[[surcharges]]\nname = \"strip\"\nx_m = [{:?}, {:?}]\npressure_kpa = {}", load["x0"].as_f64().unwrap(), load["x1"].as_f64().unwrap(), load["q"]).unwrap();
+        writeln!(
+            t,
+            "[[surcharges]]\nname = \"strip\"\nx_m = [{:?}, {:?}]\npressure_kpa = {}",
+            load["x0"].as_f64().unwrap(),
+            load["x1"].as_f64().unwrap(),
+            load["q"]
+        )
+        .unwrap();
     }
 }
 
@@ -138,6 +148,20 @@ macro_rules! cases {
     ($($name:ident),*) => { $(#[test] fn $name() { check(concat!(stringify!($name), ".json")); })* };
 }
 cases!(
-    case1_d1, case1_d2, case1_d4, case1_d6, case1_d8, case1k_d6, case2_d4, case3_d1, case3_d2, case3_d3, case3_d4, case3_d5, case3_d6,
-    case7_both, case7_seismic, case7_surcharge
+    case1_d1,
+    case1_d2,
+    case1_d4,
+    case1_d6,
+    case1_d8,
+    case1k_d6,
+    case2_d4,
+    case3_d1,
+    case3_d2,
+    case3_d3,
+    case3_d4,
+    case3_d5,
+    case3_d6,
+    case7_both,
+    case7_seismic,
+    case7_surcharge
 );
