@@ -105,8 +105,14 @@ impl Solved {
 
 /// The solution at depth 0, to which backgrounds and displacements refer.
 pub(crate) struct Zero {
-    pub(crate) section: Section,
+    pub(crate) record: Record,
     pub(crate) stress: Stress,
+}
+
+impl Zero {
+    pub(crate) fn section(&self) -> &Section {
+        &self.record.section
+    }
 }
 
 /// Runs the job on a checked model.
@@ -141,7 +147,7 @@ impl Run<'_> {
     fn zero(&self) -> Result<Zero, AssessError> {
         let at_zero = |source| AssessError::Depth { depth_m: 0.0, source };
         let (record, stress) = record(&self.prepared.context(), 0.0, None).map_err(at_zero)?;
-        Ok(Zero { section: record.section, stress })
+        Ok(Zero { record, stress })
     }
 
     /// Solves a batch of depths in parallel; results in the order asked for, equal depths solved once.
@@ -158,11 +164,20 @@ impl Run<'_> {
         }
         let at_depth = |source| AssessError::Depth { depth_m, source };
         let ctx = self.prepared.context();
-        let (record, stress) = record(&ctx, depth_m, Some((&zero.section, &zero.stress))).map_err(at_depth)?;
-        let extras = describe::extras(&ctx, &record, &stress, zero);
-        let field = (self.scope == Scope::Assess).then(|| snapshot(&ctx, &record, &stress, (&zero.section, &zero.stress)));
+        let reference = (zero.section(), &zero.stress);
+        let solved = |record: Record, stress: &Stress| {
+            let extras = describe::extras(&ctx, &record, stress, zero);
+            let field = (self.scope == Scope::Assess).then(|| snapshot(&ctx, &record, stress, reference));
+            Solved { record, extras, field }
+        };
+        let solved = if depth_m.total_cmp(&0.0).is_eq() {
+            solved(zero.record.clone(), &zero.stress)
+        } else {
+            let (record, stress) = record(&ctx, depth_m, Some(reference)).map_err(at_depth)?;
+            solved(record, &stress)
+        };
         self.progress.step();
-        Ok(Solved { record, extras, field })
+        Ok(solved)
     }
 }
 

@@ -5,7 +5,7 @@
 //! the series is the same for any number of threads.
 use std::collections::BTreeMap;
 
-use crate::critical::{Point, excess, first_crossing};
+use crate::critical::{Crossing, Point, excess, first_crossing};
 use crate::outcome::{CheckResult, CutResult, ProbeResult};
 
 /// Depths are solved on a grid of one centimetre; the surveyed depth is kept as it is.
@@ -117,8 +117,12 @@ fn next_depths(params: &DeepenParams, points: &[DepthPoint]) -> Vec<f64> {
     for inputs in ["cautious", "best estimate"] {
         wanted.extend(toward_root(params, points, keys.iter().filter(|k| k.2 == inputs)));
     }
+    let horizon_m = ["cautious", "best estimate"]
+        .iter()
+        .map(|inputs| overall_crossing(params, points, keys.iter().filter(|k| k.2 == *inputs)).map_or(params.search_to_m, |c| c.over_m))
+        .fold(0.0, f64::max);
     for key in &keys {
-        wanted.extend(bends(params, points, key));
+        wanted.extend(bends(params, points, key, horizon_m));
     }
     let new = |d: &f64| points.iter().all(|p| 0.999 * DEPTH_GRID_M <= (p.depth_m - d).abs());
     wanted = wanted.into_iter().map(on_grid).filter(new).collect();
@@ -127,15 +131,19 @@ fn next_depths(params: &DeepenParams, points: &[DepthPoint]) -> Vec<f64> {
     wanted
 }
 
+/// The first crossing among `keys`, checks that are over at the surveyed depth left out.
+fn overall_crossing<'a>(params: &DeepenParams, points: &[DepthPoint], keys: impl Iterator<Item = &'a Key>) -> Option<Crossing> {
+    keys.filter_map(|key| {
+        let series = excess_series(points, key, params.required_reserve);
+        let over_at = |d: f64| series.iter().any(|p| p.depth_m.total_cmp(&d).is_eq() && 0.0 < p.excess);
+        if over_at(params.surveyed_m) { None } else { first_crossing(&series, params.surveyed_m) }
+    })
+    .min_by(|a, b| a.depth_m.total_cmp(&b.depth_m))
+}
+
 /// The next depth toward the smallest critical depth among `keys`, while its bracket is wider than twice the grid.
 fn toward_root<'a>(params: &DeepenParams, points: &[DepthPoint], keys: impl Iterator<Item = &'a Key>) -> Option<f64> {
-    let crossing = keys
-        .filter_map(|key| {
-            let series = excess_series(points, key, params.required_reserve);
-            let over_at = |d: f64| series.iter().any(|p| p.depth_m.total_cmp(&d).is_eq() && 0.0 < p.excess);
-            if over_at(params.surveyed_m) { None } else { first_crossing(&series, params.surveyed_m) }
-        })
-        .min_by(|a, b| a.depth_m.total_cmp(&b.depth_m))?;
+    let crossing = overall_crossing(params, points, keys)?;
     let width = crossing.over_m - crossing.under_m;
     if width <= 2.0 * DEPTH_GRID_M {
         return None;
@@ -145,8 +153,10 @@ fn toward_root<'a>(params: &DeepenParams, points: &[DepthPoint], keys: impl Iter
     Some(crossing.depth_m.clamp(crossing.under_m + inset, crossing.over_m - inset))
 }
 
-/// Midpoints of the intervals in which a check near its limit bends by more than allowed or its place jumps.
-fn bends(params: &DeepenParams, points: &[DepthPoint], key: &Key) -> Vec<f64> {
+/// Midpoints of the intervals before `horizon_m` in which a check near its limit bends by more than allowed or its place jumps.
+///
+/// Beyond the horizon (the larger of the two overall critical depths) no check can change the answer.
+fn bends(params: &DeepenParams, points: &[DepthPoint], key: &Key, horizon_m: f64) -> Vec<f64> {
     let rows: Vec<(&DepthPoint, &CheckResult)> = points.iter().filter_map(|p| find(p, key).map(|c| (p, c))).collect();
     let value = |i: usize| excess(rows[i].1, params.required_reserve);
     let mut middles = Vec::new();
@@ -154,7 +164,7 @@ fn bends(params: &DeepenParams, points: &[DepthPoint], key: &Key) -> Vec<f64> {
         let (d0, d1) = (rows[i - 1].0.depth_m, rows[i].0.depth_m);
         let near = NEAR_LIMIT - 1.0 < value(i - 1).max(value(i));
         let both_over = 0.0 < value(i - 1) && 0.0 < value(i);
-        if d1 - d0 <= NARROWEST_M || d1 <= params.surveyed_m || !near || both_over {
+        if d1 - d0 <= NARROWEST_M || d1 <= params.surveyed_m || horizon_m <= d0 || !near || both_over {
             continue;
         }
         let (a, b) = (rows[i - 1].1.at, rows[i].1.at);

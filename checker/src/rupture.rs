@@ -4,7 +4,7 @@
 //! stress from the governing place down to the hollow; for the others it is the worst section line that passes within one
 //! averaging length of the place.
 use crate::demand::{CheckKind, Found, LineValue};
-use crate::model::{Carries, Model};
+use crate::model::Model;
 
 /// Share of the worst line's bending demand above which a line counts for the range of ground lost.
 const NEARLY_WORST: f64 = 0.95;
@@ -42,25 +42,14 @@ pub fn nearest_worst_line(found: &Found, lines: &[LineValue], bending_pa: &[f64]
         .or_else(|| (0..lines.len()).min_by(|&a, &b| distances[a].total_cmp(&distances[b])))
 }
 
-/// Ground lost behind the brow when the block breaks on a line whose layers, from the bottom up, reach the given levels.
-///
-/// A layer that only loads comes to rest at its own slope from where the line enters it:
+/// Ground lost behind the brow when the block breaks on a line: its upper end, and the lay-back of the loose layers above it.
 ///
 /// ```text
-/// x_edge = max(x_top, x_entry + (z_top - z_entry) / tan(rest slope))
+/// x_edge = x_top + sum over loose layers of thickness / tan(rest slope)
 /// ```
 pub fn ground_lost_m(model: &Model, line: &LineValue, brow_x_m: f64) -> f64 {
-    let length = line.length_m();
-    let at = |along: f64| [0, 1].map(|k| line.from_m[k] + along / length * (line.to_m[k] - line.from_m[k]));
-    let mut edge = line.to_m[0];
-    for piece in &line.pieces {
-        let layer = &model.layers[piece.layer];
-        if let (Carries::LoadOnly, Some(slope)) = (layer.carries, layer.rest_slope_rad) {
-            let entry = at(piece.along_m[0]);
-            edge = edge.max(entry[0] + (line.to_m[1] - entry[1]) / slope.tan());
-        }
-    }
-    edge - brow_x_m
+    let lay_back = |&(layer, thickness): &(usize, f64)| model.layers[layer].rest_slope_rad.map_or(0.0, |slope| thickness / slope.tan());
+    line.to_m[0] + line.loose_m.iter().map(lay_back).sum::<f64>() - brow_x_m
 }
 
 /// Range of ground lost over all lines whose bending demand is within 5 % of the greatest.

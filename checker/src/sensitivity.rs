@@ -43,11 +43,25 @@ pub fn variations(model: &Model, height_m: f64, platform_m: f64, averaging_lengt
     all.extend(poisson(model, &used));
     let lengths = [0.5 * averaging_length_m, 2.0 * averaging_length_m];
     let with_length = lengths.map(|l| changed(model, |m| m.checks.averaging = Averaging::Given(l)));
-    all.push(Variation { what: "averaging length".into(), ends: lengths, unit: "m", models: with_length, solve_again: true, k0_held: false });
+    all.push(Variation {
+        what: "averaging length".into(),
+        ends: lengths,
+        unit: "m",
+        models: with_length,
+        solve_again: true,
+        k0_held: false,
+    });
     let bases = MODEL_DEPTHS.map(|n| platform_m - n * height_m);
     let with_base = bases.map(|z| changed(model, |m| m.extent.base_z_m = Some(z)));
     let depths = MODEL_DEPTHS.map(|n| n * height_m);
-    all.push(Variation { what: "depth of the model below the platform".into(), ends: depths, unit: "m", models: with_base, solve_again: true, k0_held: false });
+    all.push(Variation {
+        what: "depth of the model below the platform".into(),
+        ends: depths,
+        unit: "m",
+        models: with_base,
+        solve_again: true,
+        k0_held: false,
+    });
     all
 }
 

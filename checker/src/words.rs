@@ -28,7 +28,9 @@ pub fn today(depth_m: f64, worst: Option<&CheckResult>, required_reserve: f64) -
             "At the surveyed undercut depth (horizontal) of {depth_m:.2} m the worst check, {name}, stands at utilization {u:.2} against its limit \
              {limit:.2}"
         ),
-        None => format!("At the surveyed undercut depth (horizontal) of {depth_m:.2} m {name} has no capacity left; treat the overhang as able to fall now"),
+        None => format!(
+            "At the surveyed undercut depth (horizontal) of {depth_m:.2} m {name} has no capacity left; treat the overhang as able to fall now"
+        ),
     }
 }
 
@@ -37,7 +39,8 @@ pub fn critical(critical: &CriticalDepth, inputs: &str) -> String {
     match (critical.depth_m, critical.check) {
         (Some(depth), Some(check)) => {
             let error = critical.error_m.map_or_else(String::new, |e| format!(" (numerical error {e:.2} m)"));
-            let lost = critical.ground_lost_m.map_or_else(String::new, |g| format!(", and about {g:.1} m of ground behind the brow goes with it"));
+            let lost =
+                critical.ground_lost_m.map_or_else(String::new, |g| format!(", and about {g:.1} m of ground behind the brow goes with it"));
             format!("with {inputs} inputs {check} passes its limit at an undercut depth of {depth:.2} m{error}{lost}")
         }
         _ => format!("with {inputs} inputs no check passes its limit down to {:.1} m; nothing is known beyond", critical.searched_to_m),

@@ -9,11 +9,11 @@ use fem_core::recovery::{RecoveredLayout, Recovery, RecoveryParams, singular_nod
 use fem_core::stress::raw_stress_pa;
 use fem_core::system::{Problem, System};
 
+use super::AnalysisError;
 use super::in_situ::in_situ_pa;
 use super::load_cases::CaseSet;
 use super::loads::{supports, unit_loads};
 use super::samples::Weighted;
-use super::AnalysisError;
 use crate::model::Model;
 use crate::section::Section;
 
@@ -72,7 +72,13 @@ impl Stress {
     ///
     /// # Errors
     /// [`AnalysisError`] if a material is impossible, a part of the body floats or the factorization fails.
-    pub fn solve(model: &Model, section: &Section, mesh: Arc<Mesh>, smallest_angle_rad: f64, cases: &CaseSet) -> Result<Self, AnalysisError> {
+    pub fn solve(
+        model: &Model,
+        section: &Section,
+        mesh: Arc<Mesh>,
+        smallest_angle_rad: f64,
+        cases: &CaseSet,
+    ) -> Result<Self, AnalysisError> {
         let elastic = |layer: usize| {
             let rock = &model.rocks[section.rock_of_layer(layer)];
             Elastic::new(rock.youngs_modulus_pa, rock.poissons_ratio)

@@ -96,7 +96,8 @@ fn rupture(model: &Model, solved: &Solved, found: &Found, averaging_length_m: f6
         })
         .collect();
     let brow_x = record.section.brow_m()[0];
-    let traced = solved.extras.traces.iter().find(|t| t.0 == found.inputs && t.1 == found.situation && found.kind == CheckKind::CliffTopTension);
+    let traced =
+        solved.extras.traces.iter().find(|t| t.0 == found.inputs && t.1 == found.situation && found.kind == CheckKind::CliffTopTension);
     let line = match traced {
         Some((_, _, line)) => line.clone(),
         None => record.lines[nearest_worst_line(found, &record.lines, &bending_pa, averaging_length_m)?].clone(),

@@ -3,11 +3,10 @@ use super::critical_depths::critical_depths;
 use super::{AssessError, Assessment, Run, Scope, Solved, Zero};
 use crate::analysis::Stress;
 use crate::demand::{CheckKind, Found, InputCase, LineValue};
-use crate::depth::{Context, Record, line_between, line_value, mean_state};
-use crate::diagnostic::Diagnostic;
+use crate::depth::{Context, Record, line_between, mean_state, rupture_value};
 use crate::model::{Date, Headline, Model, Person};
 use crate::outcome::{
-    BelowInfo, CheckResult, CriticalDepths, CutResult, DepthResult, ExtentInfo, Governing, ModelInfo, Note, Numerics, Outcome, PersonInfo,
+    BelowInfo, CheckResult, CriticalDepths, CutResult, DepthResult, ExtentInfo, Governing, ModelInfo, Numerics, Outcome, PersonInfo,
     ProbeResult, Program, ReportInfo, SectionInfo, Status, StressKpa, SurveyedState,
 };
 use crate::section::{Feature, Section};
@@ -24,8 +23,8 @@ impl Run<'_> {
     pub(super) fn describe(&self, mut solved: Vec<Solved>) -> Result<Assessment, AssessError> {
         let model: &Model = &self.prepared.model;
         let surveyed_m = self.prepared.site.surveyed_depth_m();
-        let critical_depths = (self.scope != Scope::Check)
-            .then(|| critical_depths(model, &solved, surveyed_m, self.prepared.averaging_length_m));
+        let critical_depths =
+            (self.scope != Scope::Check).then(|| critical_depths(model, &solved, surveyed_m, self.prepared.averaging_length_m));
         let hangs_on = match (&critical_depths, self.scope) {
             (Some(c), Scope::Assess) => self.hangs_on(&solved, c.best_estimate.depth_m)?,
             _ => Vec::new(),
@@ -120,7 +119,8 @@ impl Run<'_> {
             keep_out_m: below.keep_out_m.unwrap_or(1.5 * height),
             basis: below.basis.clone().unwrap_or_else(|| match below.keep_out_m {
                 Some(_) => "given in the model without a basis".to_owned(),
-                None => "DEFAULT: 1.5 x cliff height, a width used by a coastal agency for falls of soft limestone; not calculated here".to_owned(),
+                None => "DEFAULT: 1.5 x cliff height, a width used by a coastal agency for falls of soft limestone; not calculated here"
+                    .to_owned(),
             }),
         }
     }

@@ -8,8 +8,8 @@ use crate::depth::{evaluate_record, record_on};
 use crate::outcome::HangsOn;
 use crate::sensitivity::{Variation, variations};
 
-/// Depths at which the stress is solved again for a changed model.
-const DEPTHS_AGAIN: usize = 5;
+/// Depths at which the stress is solved again for a changed model, in steps from the critical depth; the surveyed depth comes to them.
+const DEPTHS_AGAIN: [f64; 4] = [-3.0, -1.0, 1.0, 3.0];
 
 impl Run<'_> {
     /// Low and high end of every input, one at a time, with mean inputs otherwise; strongest first.
@@ -44,7 +44,7 @@ impl Run<'_> {
         let depth = |i: usize| solved[i].record.section.depth_m();
         let surveyed = solved.iter().position(|s| s.record.section.depth_m().total_cmp(&params.surveyed_m).is_eq()).unwrap_or(0);
         let nearest = |d: f64| (0..=last).min_by(|&a, &b| (depth(a) - d).abs().total_cmp(&(depth(b) - d).abs())).unwrap_or(last);
-        let mut chosen: Vec<usize> = (0..DEPTHS_AGAIN).map(|k| nearest(depth(center) + (k as f64 - 2.0) * 2.0 * step)).collect();
+        let mut chosen: Vec<usize> = DEPTHS_AGAIN.iter().map(|k| nearest(depth(center) + k * step)).collect();
         chosen.push(surveyed);
         chosen.retain(|&i| surveyed <= i);
         chosen.sort_unstable();

@@ -1,8 +1,8 @@
 //! All checks at one depth: the worst place or line of every check in every situation for cautious and mean inputs.
+use super::CheckKind;
 use super::line::{LineValue, SectionForces};
 use super::place::{Pair, PlaceValue, shear, tension};
 use super::states::{InputCase, K0Case};
-use super::CheckKind;
 use crate::analysis::load_cases::{CaseSet, State};
 use crate::model::{Model, Rock, Uncertain};
 use crate::outcome::CheckResult;

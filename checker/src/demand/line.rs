@@ -19,6 +19,8 @@ pub struct LineValue {
     pub surcharges: Vec<(f64, [f64; 2])>,
     /// Pieces of the line, from the hollow up, one a layer crossed.
     pub pieces: Vec<Piece>,
+    /// Layers that only load above the upper end, with their thickness there, m: they break off upright and lie back.
+    pub loose_m: Vec<(usize, f64)>,
 }
 
 /// The part of a rupture line in one layer.

@@ -2,8 +2,8 @@
 use super::CheckKind;
 use crate::analysis::load_cases::superpose;
 use crate::strength::Strength;
-use fem_core::tensor::major;
 use crate::strength::mohr_coulomb::{LocalShear, local_shear};
+use fem_core::tensor::major;
 
 /// Mean effective stress tensors over one averaging segment or disc, `[xx, zz, xz]` in Pa for every unit load case.
 #[derive(Debug, Clone, PartialEq)]

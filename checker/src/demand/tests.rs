@@ -15,15 +15,25 @@ fn cantilever(depth: f64, h: f64) -> LineValue {
         centroids_m: vec![[0.5 * depth, 0.5 * h]],
         surcharges: Vec::new(),
         pieces: vec![Piece { layer: 0, along_m: [0.0, h], normal_pa: vec![0.0], normal_coarse_pa: vec![0.0] }],
+        loose_m: Vec::new(),
     }
 }
 
 fn state(model: &Model) -> State {
-    State { situation: 0, unit_weight_n_per_m3: model.rocks.iter().map(|r| r.unit_weight_n_per_m3.mean()).collect(), k0: vec![0.5; model.rocks.len()] }
+    State {
+        situation: 0,
+        unit_weight_n_per_m3: model.rocks.iter().map(|r| r.unit_weight_n_per_m3.mean()).collect(),
+        k0: vec![0.5; model.rocks.len()],
+    }
 }
 
 fn limits(tension_kpa: f64, cohesion_kpa: f64, friction_deg: f64) -> Strength {
-    Strength { tensile_strength_pa: 1e3 * tension_kpa, cohesion_pa: 1e3 * cohesion_kpa, tan_friction: friction_deg.to_radians().tan(), cut_from_pa: None }
+    Strength {
+        tensile_strength_pa: 1e3 * tension_kpa,
+        cohesion_pa: 1e3 * cohesion_kpa,
+        tan_friction: friction_deg.to_radians().tan(),
+        cut_from_pa: None,
+    }
 }
 
 /// Beam formulas for an overhang, worked values gamma 25, L 5, h 4: M 1250, V 500, top fibre 468.75 kPa, shear gamma L

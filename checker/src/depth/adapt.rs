@@ -21,7 +21,7 @@ use super::record::{Context, PROBE_FLOOR};
 use crate::analysis::samples::Weighted;
 use crate::analysis::{AnalysisError, Stress};
 use crate::demand::{Evaluation, Found, InputCase, place_utilization};
-use crate::model::Headline;
+use crate::model::{Headline, Probe};
 use crate::section::{Feature, Section};
 
 /// Gradation of element size: growth per distance.
@@ -31,6 +31,11 @@ const GROWTH: f64 = 2.5;
 /// Limits of the change of size from one mesh to the next.
 const SIZE_CHANGE: [f64; 2] = [0.25, 1.5];
 
+/// Size at a corner that points into the rock, in averaging lengths.
+const CORNER_SIZE: f64 = 0.12;
+/// Turn of the surface beyond which a corner counts as sharp, rad (45 degrees).
+const SHARP_RAD: f64 = std::f64::consts::FRAC_PI_4;
+
 /// How far a mesh may go.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct Budget {
@@ -39,7 +44,7 @@ pub struct Budget {
 }
 
 /// Size field of the first mesh, from averaging length and geometry.
-pub fn first_sizes(section: &Section, averaging_length_m: f64) -> SizeField {
+pub fn first_sizes(section: &Section, averaging_length_m: f64, probes: &[Probe]) -> SizeField {
     let l = averaging_length_m;
     let h = section.cliff_height_m();
     let mut sources = Vec::new();
@@ -47,19 +52,45 @@ pub fn first_sizes(section: &Section, averaging_length_m: f64) -> SizeField {
     for i in 0..section.surface().n_segments() {
         let segment = section.surface().segment(i);
         let size_m = match section.feature_of(i) {
-            Feature::Back | Feature::Roof => 0.6 * l,
-            Feature::Floor => 1.2 * l,
-            Feature::Face => l,
+            Feature::Back | Feature::Roof => 0.4 * l,
+            Feature::Floor => 0.8 * l,
+            Feature::Face => 0.8 * l,
             Feature::Ground if segment.point(0.0)[0] < reach => 1.5 * l,
             Feature::Ground | Feature::Platform => continue,
         };
         let to = segment.point(1.0);
         sources.push(SizeSource::segment(segment.point(0.0), [to[0].min(reach), to[1]], size_m));
     }
-    if section.back_m().is_some() {
-        sources.push(SizeSource::point(section.lip_m(), 0.25 * l));
+    sources.push(SizeSource::point(section.lip_m(), 0.25 * l));
+    sources.extend(sharp_corners(section).into_iter().map(|corner| SizeSource::point(corner, CORNER_SIZE * l)));
+    sources.extend(contact_ends(section).into_iter().map(|end| SizeSource::point(end, CORNER_SIZE * l)));
+    for probe in probes {
+        sources.push(SizeSource::point(probe.at_m, probe.over_m.unwrap_or(l).max(0.25 * l)));
     }
     SizeField { largest_m: 0.35 * h, gradation: GRADATION, sources, background: Vec::new() }
+}
+
+/// Corners of the hollow and the face that point into the rock by more than [`SHARP_RAD`]: the stress is singular there.
+fn sharp_corners(section: &Section) -> Vec<[f64; 2]> {
+    let surface = section.surface();
+    let watched = |i: usize| !matches!(section.feature_of(i), Feature::Ground | Feature::Platform);
+    let corner = |i: usize| {
+        let (a, b) = (surface.segment(i - 1).direction(1.0), surface.segment(i).direction(0.0));
+        // the rock lies on the right of the walk: a turn to the right cuts into it
+        let turn = (a[0] * b[1] - a[1] * b[0]).atan2(a[0] * b[0] + a[1] * b[1]);
+        (turn < -SHARP_RAD).then(|| surface.segment(i).point(0.0))
+    };
+    (1..surface.n_segments()).filter(|&i| watched(i - 1) || watched(i)).filter_map(corner).collect()
+}
+
+/// Where contacts meet the hollow or the face: two stiffnesses at a free surface, a weak singularity.
+fn contact_ends(section: &Section) -> Vec<[f64; 2]> {
+    let near = 1e-3 * section.cliff_height_m();
+    let watched = |p: &[f64; 2]| {
+        let (at, distance) = section.surface().nearest(*p);
+        distance <= near && !matches!(section.feature_of(at.segment), Feature::Ground | Feature::Platform)
+    };
+    section.contact_lines().iter().flat_map(|c| [c.points_m[0], c.points_m[c.points_m.len() - 1]]).filter(watched).collect()
 }
 
 /// Makes the mesh of a section for a size field.
@@ -86,9 +117,11 @@ pub fn next_sizes(
         Headline::Cautious => InputCase::Cautious,
         Headline::BestEstimate => InputCase::BestEstimate,
     };
-    let headline: Vec<&Found> = found.iter().filter(|f| f.inputs == inputs && f.index < geometry.places.len() && f.kind.is_local()).collect();
+    let headline: Vec<&Found> =
+        found.iter().filter(|f| f.inputs == inputs && f.index < geometry.places.len() && f.kind.is_local()).collect();
     let mut errors = vec![0.0; stress.mesh.triangles.len()];
-    if let Some(worst) = headline.iter().max_by(|a, b| a.result.utilization.unwrap_or(0.0).total_cmp(&b.result.utilization.unwrap_or(0.0))) {
+    if let Some(worst) = headline.iter().max_by(|a, b| a.result.utilization.unwrap_or(0.0).total_cmp(&b.result.utilization.unwrap_or(0.0)))
+    {
         let coefficients = stress.cases.coefficients(ctx.model, &worst.state);
         let primal = energy_error(stress, &stress.displacements_of(&coefficients), &stress.recovered_of(&coefficients));
         let mut duals = dual_loads(stress, geometry, evaluation, &headline);
@@ -100,7 +133,7 @@ pub fn next_sizes(
             }
         }
     }
-    let first = first_sizes(section, ctx.averaging_length_m);
+    let first = first_sizes(section, ctx.averaging_length_m, &[]);
     Ok(SizeField { background: wanted_sizes(stress, &errors), sources: Vec::new(), ..first })
 }
 
@@ -174,13 +207,15 @@ fn sizes(mesh: &Mesh) -> Vec<([f64; 2], f64)> {
 
 /// Size field of a mesh like a given one.
 pub fn same_sizes(section: &Section, mesh: &Mesh, averaging_length_m: f64) -> SizeField {
-    SizeField { background: sizes(mesh), sources: Vec::new(), ..first_sizes(section, averaging_length_m) }
+    SizeField { background: sizes(mesh), sources: Vec::new(), ..first_sizes(section, averaging_length_m, &[]) }
 }
 
 /// Wanted size at the centroid of every triangle, m.
 fn wanted_sizes(stress: &Stress, errors: &[f64]) -> Vec<([f64; 2], f64)> {
     let largest = errors.iter().copied().fold(0.0, f64::max);
-    let change = |error: f64, tau: f64| if 0.0 < error { (tau / error).powf(1.0 / 6.0).clamp(SIZE_CHANGE[0], SIZE_CHANGE[1]) } else { SIZE_CHANGE[1] };
+    let change = |error: f64, tau: f64| {
+        if 0.0 < error { (tau / error).powf(1.0 / 6.0).clamp(SIZE_CHANGE[0], SIZE_CHANGE[1]) } else { SIZE_CHANGE[1] }
+    };
     let count = |tau: f64| errors.iter().map(|&e| change(e, tau).powi(-2)).sum::<f64>();
     // tau by bisection on its logarithm: the count falls as tau grows
     let target = GROWTH * errors.len() as f64;

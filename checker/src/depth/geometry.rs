@@ -133,7 +133,8 @@ fn discs(section: &Section, diameter_m: f64) -> (Vec<Target>, f64) {
 /// Straight lines from the back and the innermost fifth of the roof to the ground.
 fn rupture_lines(section: &Section) -> Vec<TargetLine> {
     let Some(back) = section.back_m() else { return Vec::new() };
-    let starts = STARTS.iter().filter_map(|share| if *share <= 0.0 { Some(back) } else { roof_point(section, back[0] - share * section.depth_m()) });
+    let starts =
+        STARTS.iter().filter_map(|share| if *share <= 0.0 { Some(back) } else { roof_point(section, back[0] - share * section.depth_m()) });
     let n = ((LEANS_DEG.1 - LEANS_DEG.0) / LEANS_DEG.2).round() as usize;
     let leans: Vec<f64> = (0..=n).map(|k| (LEANS_DEG.0 + k as f64 * LEANS_DEG.2).to_radians()).collect();
     starts.flat_map(|start| leans.iter().filter_map(move |&lean| rupture_line(section, start, lean)).collect::<Vec<_>>()).collect()

@@ -12,7 +12,7 @@ use crate::analysis::samples::on_segment;
 use crate::analysis::stress::SolveQuality;
 use crate::analysis::{AnalysisError, Stress};
 use crate::demand::{Evaluation, Found, InputCase, K0Case, LineValue, Piece, PlaceValue, RockEnds, evaluate};
-use crate::model::Model;
+use crate::model::{Carries, Model};
 use crate::section::{Section, Site};
 use crate::strength::Strength;
 
@@ -56,7 +56,7 @@ impl Context<'_> {
 }
 
 /// Everything kept of one depth.
-#[derive(Debug)]
+#[derive(Debug, Clone)]
 pub struct Record {
     /// Section.
     pub section: Section,
@@ -87,7 +87,7 @@ pub struct Record {
 pub fn record(ctx: &Context<'_>, depth_m: f64, zero: Option<(&Section, &Stress)>) -> Result<(Record, Stress), AnalysisError> {
     let section = ctx.site.at_depth(depth_m)?;
     let geometry = Geometry::new(&section, ctx.averaging_length_m, &ctx.model.probes);
-    let mut mesh = make_mesh(&section, &first_sizes(&section, ctx.averaging_length_m))?;
+    let mut mesh = make_mesh(&section, &first_sizes(&section, ctx.averaging_length_m, &ctx.model.probes))?;
     let mut last: Option<(Record, Stress)> = None;
     for round in 0..MOST_MESHES {
         let stress = Stress::solve(ctx.model, &section, mesh.0.clone(), mesh.1, &ctx.cases)?;
@@ -121,7 +121,8 @@ pub fn record_on(ctx: &Context<'_>, depth_m: f64, like: &Record) -> Result<Recor
     let section = ctx.site.at_depth(depth_m)?;
     let geometry = Geometry::new(&section, ctx.averaging_length_m, &[]);
     let same_body = section.extents() == like.section.extents();
-    let mesh = if same_body { like.mesh.clone() } else { make_mesh(&section, &same_sizes(&section, &like.mesh.0, ctx.averaging_length_m))? };
+    let mesh =
+        if same_body { like.mesh.clone() } else { make_mesh(&section, &same_sizes(&section, &like.mesh.0, ctx.averaging_length_m))? };
     let stress = Stress::solve(ctx.model, &section, mesh.0.clone(), mesh.1, &ctx.cases)?;
     let mut record = sampled(ctx, &section, &geometry, &stress, mesh);
     record.found = evaluate_record(ctx, &record, &[InputCase::BestEstimate]);
@@ -164,7 +165,7 @@ fn sampled(ctx: &Context<'_>, section: &Section, geometry: &Geometry, stress: &S
         coarse: Vec::new(),
         background: Vec::new(),
     });
-    let lines = geometry.lines.iter().map(|line| line_value(ctx.model, section, stress, line));
+    let lines = geometry.lines.iter().filter_map(|line| rupture_value(ctx.model, section, stress, line));
     Record {
         section: section.clone(),
         places: places.collect(),
@@ -216,7 +217,48 @@ pub fn line_value(model: &Model, section: &Section, stress: &Stress, line: &Targ
         centroids_m: body.centroids_m,
         surcharges: model.surcharges.iter().map(|s| strip(s.x_m)).collect(),
         pieces: line.pieces.iter().map(piece).collect(),
+        loose_m: Vec::new(),
     }
+}
+
+/// A rupture line through the rock that carries: layers above it that only load break off upright at its upper end.
+///
+/// The body loses the wedge of the loose layers between the upright and the straight line (gains it where the line leans seaward). `None` where
+/// no layer on the line carries.
+pub fn rupture_value(model: &Model, section: &Section, stress: &Stress, line: &TargetLine) -> Option<LineValue> {
+    let loose = |piece: &&(usize, [f64; 2])| model.layers[piece.0].carries == Carries::LoadOnly;
+    let n_loose = line.pieces.iter().rev().take_while(loose).count();
+    if n_loose == line.pieces.len() {
+        return None;
+    }
+    if n_loose == 0 {
+        return Some(line_value(model, section, stress, line));
+    }
+    let kept = &line.pieces[..line.pieces.len() - n_loose];
+    let length = (line.to_m[0] - line.from_m[0]).hypot(line.to_m[1] - line.from_m[1]);
+    let share = kept[kept.len() - 1].1[1] / length;
+    let entry = [0, 1].map(|k| line.from_m[k] + share * (line.to_m[k] - line.from_m[k]));
+    let ground = [entry[0], section.ground_level_m(entry[0])];
+    let whole = line_value(model, section, stress, line);
+    let mut value = LineValue { to_m: entry, pieces: whole.pieces[..kept.len()].to_vec(), ..whole };
+    for (strip, surcharge) in value.surcharges.iter_mut().zip(&model.surcharges) {
+        let from = strip.1[0] - 0.5 * strip.0;
+        let width = (surcharge.x_m[1].min(entry[0]) - from).max(0.0);
+        let middle = from + 0.5 * width;
+        *strip = (width, [middle, section.ground_level_m(middle)]);
+    }
+    let area = 0.5 * (line.to_m[0] - entry[0]) * (ground[1] - entry[1]);
+    let centroid = [0, 1].map(|k| (entry[k] + ground[k] + line.to_m[k]) / 3.0);
+    let layer = section.layer_at(centroid);
+    let (old, new) = (value.areas_m2[layer], value.areas_m2[layer] - area);
+    if 0.0 < new {
+        value.centroids_m[layer] = [0, 1].map(|k| (old * value.centroids_m[layer][k] - area * centroid[k]) / new);
+    }
+    value.areas_m2[layer] = new.max(0.0);
+    let above = section.overburden_m(entry);
+    let loose_layer = |&(j, t): &(usize, f64)| 0.0 < t && model.layers[j].carries == Carries::LoadOnly;
+    value.loose_m = above.into_iter().enumerate().filter(loose_layer).collect();
+    Some(value)
 }
 
 /// Keeps the values of the last mesh but one beside those of the last.

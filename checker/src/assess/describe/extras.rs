@@ -1,7 +1,7 @@
 //! Probes, cuts, rupture traces and the three ways to the section forces at one depth.
 use super::{
-    CheckKind, Context, CutResult, Feature, Found, InputCase, LineValue, ProbeResult, Record, Section, Stress, StressKpa, Zero, line_between,
-    line_value, mean_state,
+    CheckKind, Context, CutResult, Feature, Found, InputCase, LineValue, ProbeResult, Record, Section, Stress, StressKpa, Zero,
+    line_between, mean_state, rupture_value,
 };
 use fem_core::tensor::{major, minor, principal};
 
@@ -81,7 +81,8 @@ fn probe_result(
         (Some(direction), Some(length)) => on_segment(probe.at_m, direction, length),
         _ => vec![(probe.at_m, 1.0)],
     };
-    let middle = probe.toward.zip(probe.over_m).map_or(probe.at_m, |(d, l)| [probe.at_m[0] + 0.5 * l * d[0], probe.at_m[1] + 0.5 * l * d[1]]);
+    let middle =
+        probe.toward.zip(probe.over_m).map_or(probe.at_m, |(d, l)| [probe.at_m[0] + 0.5 * l * d[0], probe.at_m[1] + 0.5 * l * d[1]]);
     let layer = section.layer_at(middle);
     let tensor = crate::analysis::load_cases::superpose(coefficients, &stress.mean_pa(section, &samples, layer));
     result.stress_kpa = Some(in_kpa(ctx, section, tensor, (probe.at_m, layer), state));
@@ -90,7 +91,7 @@ fn probe_result(
         result.mean_of_major = Some(samples.iter().map(one).sum::<f64>() / 1e3);
     }
     let now = stress.displacement_at(&stress.displacements_of(coefficients), probe.at_m, layer);
-    let then = zero.stress.displacement_at(before, probe.at_m, zero.section.layer_at(probe.at_m));
+    let then = zero.stress.displacement_at(before, probe.at_m, zero.section().layer_at(probe.at_m));
     result.displacement_mm = now.zip(then).map(|(a, b)| [1e3 * (a[0] - b[0]), 1e3 * (a[1] - b[1])]);
     result
 }
@@ -124,7 +125,7 @@ fn traces(ctx: &Context<'_>, record: &Record, stress: &Stress) -> Vec<(InputCase
     let tops = record.found.iter().filter(|f| f.kind == CheckKind::CliffTopTension && 0.0 < f.result.demand_kpa);
     tops.filter_map(|f| {
         let line = trace(ctx, record, stress, f)?;
-        Some((f.inputs, f.situation, line_value(ctx.model, &record.section, stress, &line)))
+        Some((f.inputs, f.situation, rupture_value(ctx.model, &record.section, stress, &line)?))
     })
     .collect()
 }

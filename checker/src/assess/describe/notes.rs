@@ -18,7 +18,10 @@ pub(super) fn warnings(prepared: &Prepared<'_>, solved: &[Solved], numerics: &Nu
     }
     if numerics.target_error < numerics.reached_error {
         let (reached, target) = (numerics.reached_error, numerics.target_error);
-        notes.push(note("numerics.target-missed", format!("the numerical error reached is {reached:.3} of a utilization, above the target of {target:.3}")));
+        notes.push(note(
+            "numerics.target-missed",
+            format!("the numerical error reached is {reached:.3} of a utilization, above the target of {target:.3}"),
+        ));
     }
     notes.extend(setting(model, prepared));
     notes.extend(cliffs_own_tension(prepared, solved));
@@ -74,7 +77,8 @@ fn cliffs_own_tension(prepared: &Prepared<'_>, solved: &[Solved]) -> Option<Note
 /// What is known of joints.
 fn discontinuities(model: &Model) -> Option<Note> {
     let silent = model.joint_sets.is_empty() && model.discontinuity_survey.is_none();
-    silent.then(|| note("joints.unknown", "no joint set is given and nobody states that none was seen: unseen joints govern many collapses"))
+    silent
+        .then(|| note("joints.unknown", "no joint set is given and nobody states that none was seen: unseen joints govern many collapses"))
 }
 
 /// Checks over their limit today or without any undercut.
