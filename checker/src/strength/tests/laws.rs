@@ -122,8 +122,8 @@ fn hoek_brown_equivalent_line_balances_the_areas_above_and_below_the_curve() {
         area += weight * curve;
         balance += weight * difference;
     }
-    // The published c' and phi' keep the area only nearly, since they also match the first moment after shifting the range to 0..s3max.
-    assert!((balance / area).abs() < 0.02, "areas differ by {}", balance / area);
+    // 1e-8: Simpson's rule loses order where the curve starts steeply at the tensile strength (1.3e-9 with this step).
+    assert!((balance / area).abs() < 1e-8, "areas differ by {}", balance / area);
 }
 
 #[test]
