@@ -124,10 +124,10 @@ impl Zero {
 /// [`AssessError`].
 pub fn run(model: &Model, scope: Scope, progress: &dyn Progress) -> Result<Assessment, AssessError> {
     let prepared = prepare(model).map_err(AssessError::Model)?;
-    if scope == Scope::Mesh {
-        return mesh_only::run(&prepared);
-    }
     let run = Run { prepared: &prepared, scope, progress };
+    if scope == Scope::Mesh {
+        return run.mesh_only();
+    }
     let zero = run.zero()?;
     let solved = match scope {
         Scope::Mesh | Scope::Check => run.solve(&zero, &[0.0, prepared.site.surveyed_depth_m()])?,

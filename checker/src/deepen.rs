@@ -117,11 +117,9 @@ fn next_depths(params: &DeepenParams, points: &[DepthPoint]) -> Vec<f64> {
     for inputs in ["cautious", "best estimate"] {
         wanted.extend(toward_root(params, points, keys.iter().filter(|k| k.2 == inputs)));
     }
-    let horizon_m = ["cautious", "best estimate"]
-        .iter()
-        .map(|inputs| overall_crossing(params, points, keys.iter().filter(|k| k.2 == *inputs)).map_or(params.search_to_m, |c| c.over_m))
-        .fold(0.0, f64::max);
     for key in &keys {
+        // beyond the overall critical depth of its inputs no check can change the answer
+        let horizon_m = overall_crossing(params, points, keys.iter().filter(|k| k.2 == key.2)).map_or(params.search_to_m, |c| c.over_m);
         wanted.extend(bends(params, points, key, horizon_m));
     }
     let new = |d: &f64| points.iter().all(|p| 0.999 * DEPTH_GRID_M <= (p.depth_m - d).abs());
@@ -155,7 +153,7 @@ fn toward_root<'a>(params: &DeepenParams, points: &[DepthPoint], keys: impl Iter
 
 /// Midpoints of the intervals before `horizon_m` in which a check near its limit bends by more than allowed or its place jumps.
 ///
-/// Beyond the horizon (the larger of the two overall critical depths) no check can change the answer.
+/// `horizon_m` is the overall critical depth of the key's inputs.
 fn bends(params: &DeepenParams, points: &[DepthPoint], key: &Key, horizon_m: f64) -> Vec<f64> {
     let rows: Vec<(&DepthPoint, &CheckResult)> = points.iter().filter_map(|p| find(p, key).map(|c| (p, c))).collect();
     let value = |i: usize| excess(rows[i].1, params.required_reserve);

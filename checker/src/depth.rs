@@ -7,4 +7,4 @@ mod record;
 pub use adapt::Budget;
 pub use fields::{mean_state, snapshot};
 pub use geometry::{Geometry, Target, TargetLine, clip_to_body, line_between, roof_point, rupture_line};
-pub use record::{Context, Record, evaluate_record, line_value, record, record_on, rupture_value};
+pub use record::{Context, Record, evaluate_record, first_mesh, line_value, record, record_on, rupture_value};

@@ -23,8 +23,8 @@ impl Run<'_> {
     pub(super) fn describe(&self, mut solved: Vec<Solved>) -> Result<Assessment, AssessError> {
         let model: &Model = &self.prepared.model;
         let surveyed_m = self.prepared.site.surveyed_depth_m();
-        let critical_depths =
-            (self.scope != Scope::Check).then(|| critical_depths(model, &solved, surveyed_m, self.prepared.averaging_length_m));
+        let critical_depths = matches!(self.scope, Scope::Deepen | Scope::Assess)
+            .then(|| critical_depths(model, &solved, surveyed_m, self.prepared.averaging_length_m));
         let hangs_on = match (&critical_depths, self.scope) {
             (Some(c), Scope::Assess) => self.hangs_on(&solved, c.best_estimate.depth_m)?,
             _ => Vec::new(),

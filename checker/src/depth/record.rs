@@ -80,6 +80,16 @@ pub struct Record {
     pub probe_change: f64,
 }
 
+/// Section and first mesh of a depth with its smallest angle in rad, nothing solved.
+///
+/// # Errors
+/// [`AnalysisError`] of geometry or mesh.
+pub fn first_mesh(ctx: &Context<'_>, depth_m: f64) -> Result<(Section, Arc<Mesh>, f64), AnalysisError> {
+    let section = ctx.site.at_depth(depth_m)?;
+    let (mesh, angle) = make_mesh(&section, &first_sizes(&section, ctx.averaging_length_m, &ctx.model.probes))?;
+    Ok((section, mesh, angle))
+}
+
 /// Adapts, solves and evaluates one depth. `zero` is the solution at depth 0, for the background values; `None` at depth 0.
 ///
 /// # Errors
