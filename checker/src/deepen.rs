@@ -32,6 +32,9 @@ pub struct DepthPoint {
     pub cuts: Vec<CutResult>,
 }
 
+/// Evaluates a batch of depths, in any order, and returns them in the order asked for.
+pub type Solve<'a, E> = dyn Fn(&[f64]) -> Result<Vec<DepthPoint>, E> + 'a;
+
 /// Check, situation and inputs: what a series is followed for.
 pub type Key = (&'static str, String, &'static str);
 
@@ -69,11 +72,9 @@ fn on_grid(depth_m: f64) -> f64 {
 
 /// Solves the first batch, then adds depths where a check near its limit bends or its place jumps, and around the critical depths.
 ///
-/// `solve` evaluates a batch of depths, in any order, and returns them in the order asked for.
-///
 /// # Errors
 /// The first error of `solve`.
-pub fn series<E>(params: &DeepenParams, solve: &dyn Fn(&[f64]) -> Result<Vec<DepthPoint>, E>) -> Result<Vec<DepthPoint>, E> {
+pub fn series<E>(params: &DeepenParams, solve: &Solve<'_, E>) -> Result<Vec<DepthPoint>, E> {
     let mut points = solve(&first_depths(params))?;
     for _ in 0..MOST_ROUNDS {
         let wanted = next_depths(params, &points);

@@ -107,6 +107,9 @@ impl CaseSet {
 }
 
 /// Sum of tensors times coefficients, `sum_c coefficient_c * tensor_c`.
+///
+/// # Panics
+/// If there is not one tensor a coefficient.
 pub fn superpose(coefficients: &[f64], tensors: &[[f64; 3]]) -> [f64; 3] {
     assert_eq!(coefficients.len(), tensors.len(), "one tensor a load case");
     let mut sum = [0.0; 3];

@@ -93,7 +93,7 @@ fn check(e: &Evaluation<'_>, kind: CheckKind, situation: usize, inputs: InputCas
         }
     }
     let (worst, state, label) = best?;
-    let result = publish(e, kind, inputs, &worst, &state, label);
+    let result = publish(e, (kind, inputs), &worst, &state, label);
     Some(Found { kind, situation, inputs, state, index: worst.index, result })
 }
 
@@ -210,7 +210,7 @@ fn worst_line(e: &Evaluation<'_>, kind: CheckKind, state: &State, coefficients: 
     let mut worst: Option<Worst> = None;
     for (index, line) in e.lines.iter().enumerate() {
         let forces = line.forces(e.model, state);
-        let Some((along, layer, pair)) = line_pair(e, kind, line, &forces, coefficients, limits) else { continue };
+        let Some((along, layer, pair)) = line_pair(e, kind, line, (&forces, coefficients), limits) else { continue };
         if worst.as_ref().is_none_or(|w| rank(&w.pair) < rank(&pair)) {
             let t = along / line.length_m();
             let at_m = [0, 1].map(|k| line.from_m[k] + t * (line.to_m[k] - line.from_m[k]));
@@ -224,8 +224,7 @@ fn line_pair(
     e: &Evaluation<'_>,
     kind: CheckKind,
     line: &LineValue,
-    forces: &SectionForces,
-    coefficients: &[f64],
+    (forces, coefficients): (&SectionForces, &[f64]),
     limits: &[Option<Strength>],
 ) -> Option<(f64, usize, Pair)> {
     if kind == CheckKind::SectionBending {
@@ -233,11 +232,11 @@ fn line_pair(
     }
     let middle = 0.5 * line.length_m();
     let layer = line.pieces.iter().find(|p| middle <= p.along_m[1]).or(line.pieces.last())?.layer;
-    Some((middle, layer, line.shear(e.model, forces, coefficients, limits, false)))
+    Some((middle, layer, line.shear(e.model, forces, coefficients, limits)))
 }
 
 /// The published result with background, closed-form partner and numerical error.
-fn publish(e: &Evaluation<'_>, kind: CheckKind, inputs: InputCase, worst: &Worst, state: &State, label: &str) -> CheckResult {
+fn publish(e: &Evaluation<'_>, (kind, inputs): (CheckKind, InputCase), worst: &Worst, state: &State, label: &str) -> CheckResult {
     let reserve = e.model.checks.required_reserve;
     let coefficients = e.cases.coefficients(e.model, state);
     let utilization = worst.pair.utilization();
@@ -300,7 +299,8 @@ fn place_error(e: &Evaluation<'_>, kind: CheckKind, place: &PlaceValue, coeffici
 fn section_shear_error(e: &Evaluation<'_>, worst: &Worst, state: &State, coefficients: &[f64], inputs: InputCase) -> f64 {
     let line = &e.lines[worst.index];
     let forces = line.forces(e.model, state);
-    let [fine, coarse] = [false, true].map(|coarse| line.shear(e.model, &forces, coefficients, limits(e, inputs), coarse).utilization());
+    let [fine, coarse] =
+        [line.clone(), line.on_coarse_mesh()].map(|l| l.shear(e.model, &forces, coefficients, limits(e, inputs)).utilization());
     fine.zip(coarse).map_or(0.0, |(a, b)| (a - b).abs())
 }
 

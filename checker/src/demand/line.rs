@@ -53,6 +53,16 @@ impl LineValue {
         (self.to_m[0] - self.from_m[0]).hypot(self.to_m[1] - self.from_m[1])
     }
 
+    /// The same line with the stress of the last mesh but one.
+    #[must_use]
+    pub fn on_coarse_mesh(&self) -> Self {
+        let mut copy = self.clone();
+        for piece in &mut copy.pieces {
+            piece.normal_pa.clone_from(&piece.normal_coarse_pa);
+        }
+        copy
+    }
+
     /// Section forces by equilibrium of the cut-off body under its weight, ground motion and surcharges.
     ///
     /// With `e` the unit vector up the line, `n` the normal that points out of the body (landward), `F_k` the loads and `r_k`
@@ -142,12 +152,9 @@ impl LineValue {
     ///
     /// The normal force is that of equilibrium; the stress field only splits it among the layers:
     /// `N_i = N_i,field + (N - sum N_field) l_i / l`. A layer without strength, or pulled beyond its apex, adds nothing.
-    pub fn shear(&self, model: &Model, forces: &SectionForces, coefficients: &[f64], limits: &[Option<Strength>], coarse: bool) -> Pair {
+    pub fn shear(&self, model: &Model, forces: &SectionForces, coefficients: &[f64], limits: &[Option<Strength>]) -> Pair {
         let length = self.length_m();
-        let field = |piece: &Piece| {
-            let stress = if coarse { &piece.normal_coarse_pa } else { &piece.normal_pa };
-            coefficients.iter().zip(stress).map(|(c, s)| c * s).sum::<f64>()
-        };
+        let field = |piece: &Piece| coefficients.iter().zip(&piece.normal_pa).map(|(c, s)| c * s).sum::<f64>();
         let total: f64 = self.pieces.iter().map(|p| field(p) * (p.along_m[1] - p.along_m[0])).sum();
         let correction = (forces.axial_n_per_m - total) / length;
         let strength = |piece: &Piece| {

@@ -47,7 +47,7 @@ fn cantilever_under_its_own_weight() {
     let (along, layer, pair) = line.bending(&m, &f, &[Some(limits(500.0, 100.0, 35.0))]).unwrap();
     assert_eq!((along, layer), (4.0, 0));
     assert!((pair.demand_pa - 468.75e3).abs() < 1e-3, "{pair:?}");
-    let shear = line.shear(&m, &f, &[0.0], &[Some(limits(500.0, 100.0, 35.0))], false);
+    let shear = line.shear(&m, &f, &[0.0], &[Some(limits(500.0, 100.0, 35.0))]);
     assert!((shear.demand_pa - 125e3).abs() < 1e-6 && (shear.capacity_pa - 100e3).abs() < 1e-6, "{shear:?}");
 }
 

@@ -44,7 +44,7 @@ pub struct Budget {
 }
 
 /// Size field of the first mesh, from averaging length and geometry.
-pub fn first_sizes(section: &Section, averaging_length_m: f64, probes: &[Probe]) -> SizeField {
+pub(super) fn first_sizes(section: &Section, averaging_length_m: f64, probes: &[Probe]) -> SizeField {
     let l = averaging_length_m;
     let h = section.cliff_height_m();
     let mut sources = Vec::new();
@@ -53,8 +53,7 @@ pub fn first_sizes(section: &Section, averaging_length_m: f64, probes: &[Probe])
         let segment = section.surface().segment(i);
         let size_m = match section.feature_of(i) {
             Feature::Back | Feature::Roof => 0.4 * l,
-            Feature::Floor => 0.8 * l,
-            Feature::Face => 0.8 * l,
+            Feature::Floor | Feature::Face => 0.8 * l,
             Feature::Ground if segment.point(0.0)[0] < reach => 1.5 * l,
             Feature::Ground | Feature::Platform => continue,
         };
@@ -97,7 +96,7 @@ fn contact_ends(section: &Section) -> Vec<[f64; 2]> {
 ///
 /// # Errors
 /// [`AnalysisError::Mesh`] with the mesher's own words.
-pub fn make_mesh(section: &Section, size: &SizeField) -> Result<(Arc<Mesh>, f64), AnalysisError> {
+pub(super) fn make_mesh(section: &Section, size: &SizeField) -> Result<(Arc<Mesh>, f64), AnalysisError> {
     let region = |p: [f64; 2]| section.region(p);
     let (mesh, info) = mesher::mesh(&section.outline(), &region, size, &MeshParams::default())
         .map_err(|e| AnalysisError::Mesh { depth_m: section.depth_m(), reason: e.to_string() })?;
@@ -105,13 +104,12 @@ pub fn make_mesh(section: &Section, size: &SizeField) -> Result<(Arc<Mesh>, f64)
 }
 
 /// Sizes of the next mesh from the errors of the last one.
-pub fn next_sizes(
+pub(super) fn next_sizes(
     ctx: &Context<'_>,
     section: &Section,
     geometry: &Geometry,
     stress: &Stress,
-    evaluation: &Evaluation<'_>,
-    found: &[Found],
+    (evaluation, found): (&Evaluation<'_>, &[Found]),
 ) -> Result<SizeField, AnalysisError> {
     let inputs = match ctx.model.checks.headline {
         Headline::Cautious => InputCase::Cautious,
@@ -206,7 +204,7 @@ fn sizes(mesh: &Mesh) -> Vec<([f64; 2], f64)> {
 }
 
 /// Size field of a mesh like a given one.
-pub fn same_sizes(section: &Section, mesh: &Mesh, averaging_length_m: f64) -> SizeField {
+pub(super) fn same_sizes(section: &Section, mesh: &Mesh, averaging_length_m: f64) -> SizeField {
     SizeField { background: sizes(mesh), sources: Vec::new(), ..first_sizes(section, averaging_length_m, &[]) }
 }
 

@@ -92,9 +92,8 @@ fn surface_target(section: &Section, place: &Place, averaging_length_m: f64) -> 
     let tension = match place.kind {
         PlaceKind::Surface(Feature::Ground) => CheckKind::CliffTopTension,
         PlaceKind::Surface(Feature::Platform | Feature::Floor) => return None,
-        PlaceKind::Surface(_) => CheckKind::RoofTension,
         PlaceKind::Contact { above_roof: true, .. } if section.brow_m()[0] <= place.at_m[0] => CheckKind::CliffTopTension,
-        PlaceKind::Contact { .. } => CheckKind::RoofTension,
+        PlaceKind::Surface(_) | PlaceKind::Contact { .. } => CheckKind::RoofTension,
     };
     let samples = on_segment(place.at_m, place.inward, length_m);
     let short = length_m < SHORT * averaging_length_m;

@@ -115,7 +115,7 @@ pub fn record(ctx: &Context<'_>, depth_m: f64, zero: Option<(&Section, &Stress)>
             record.found = evaluate(&evaluation(ctx, &record, &InputCase::ALL));
             return Ok((record, stress));
         }
-        let sizes = next_sizes(ctx, &section, &geometry, &stress, &evaluation(ctx, &record, &InputCase::ALL), &record.found)?;
+        let sizes = next_sizes(ctx, &section, &geometry, &stress, (&evaluation(ctx, &record, &InputCase::ALL), &record.found))?;
         mesh = make_mesh(&section, &sizes)?;
         last = Some((record, stress));
     }

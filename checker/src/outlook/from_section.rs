@@ -157,7 +157,7 @@ pub fn demand_model(
             };
             match kind {
                 CheckKind::SectionShear => {
-                    push(Law::Sliding { strengths: maker.holding_layers().map(|l| l.1).filter_map(entry_of).collect() }, None)
+                    push(Law::Sliding { strengths: maker.holding_layers().map(|l| l.1).filter_map(entry_of).collect() }, None);
                 }
                 CheckKind::SectionBending => entries.iter().enumerate().for_each(|(e, r)| push(Law::Fibre { strength: e }, Some(*r))),
                 CheckKind::LocalShear => entries.iter().enumerate().for_each(|(e, r)| push(Law::Shear { strength: e }, Some(*r))),

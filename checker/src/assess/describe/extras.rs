@@ -43,7 +43,7 @@ pub(crate) fn extras(ctx: &Context<'_>, record: &Record, stress: &Stress, zero: 
         .collect();
     let probe = |p: &Probe| {
         let each = states.iter().zip(&fields);
-        each.map(|(state, (c, before))| probe_result(ctx, section, stress, p, (state, c), (zero, before))).collect::<Vec<_>>()
+        each.map(|(state, (c, before))| probe_result(ctx, (section, stress), p, (state, c), (zero, before))).collect::<Vec<_>>()
     };
     let (weight, reaction) = super::balance::weight_and_reaction(ctx, section, stress, &states[0]);
     let (nodal_difference, stress_difference) = super::balance::three_ways(ctx, record, stress, &states);
@@ -63,8 +63,7 @@ pub(crate) fn extras(ctx: &Context<'_>, record: &Record, stress: &Stress, zero: 
 
 fn probe_result(
     ctx: &Context<'_>,
-    section: &Section,
-    stress: &Stress,
+    (section, stress): (&Section, &Stress),
     probe: &Probe,
     (state, coefficients): (&State, &[f64]),
     (zero, before): (&Zero, &[f64]),

@@ -43,6 +43,7 @@ fn line(n_cases: usize) -> LineValue {
         centroids_m: vec![[2.5, 7.0], [2.6, 4.5], [2.4, 1.6]],
         surcharges: vec![(2.0, [2.0, 8.0])],
         pieces: vec![piece(2, 0.0, 3.0), piece(1, 3.0, 6.0), piece(0, 6.0, 65.0_f64.sqrt())],
+        loose_m: Vec::new(),
     }
 }
 
@@ -55,7 +56,7 @@ fn by_the_checks(m: &Model, (places, line): (&[PlaceValue], &LineValue), check: 
     let limits = [Some(strength), Some(strength)];
     let forces = line.forces(m, &state);
     if check == "section shear" {
-        let pair = line.shear(m, &forces, &coefficients, &limits, false);
+        let pair = line.shear(m, &forces, &coefficients, &limits);
         return pair.capacity_pa - pair.demand_pa.abs();
     }
     if check == "section bending" {
