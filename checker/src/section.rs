@@ -21,6 +21,8 @@ mod site;
 mod start;
 mod strata;
 mod undercut;
+mod uneroded;
+mod walk;
 
 pub use arc::CircleArc;
 pub use body::{ContactPiece, Section};

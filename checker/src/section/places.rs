@@ -87,7 +87,7 @@ pub(crate) fn available_m(section: &Section, obstacles: &[[Point; 2]], p: Point,
 
 /// A range of the surface to be covered: from one length to another, measured along the surface.
 struct Chain {
-    chain: PlaceChain,
+    name: PlaceChain,
     from_m: f64,
     to_m: f64,
     largest_m: f64,
@@ -116,7 +116,7 @@ impl Section {
                 let at = self.surface().at_length(&lengths, chain.from_m + sign * done);
                 let at = snapped(&corners, &lengths, chain.from_m + sign * done, 0.5 * step)
                     .map_or(at, |vertex| OnPath { segment: vertex, share: 0.0 });
-                if let Some(place) = self.surface_place(at, (chain.chain, index), &obstacles) {
+                if let Some(place) = self.surface_place(at, (chain.name, index), &obstacles) {
                     places.push(place);
                 }
                 done += step;
@@ -143,7 +143,7 @@ impl Section {
             let share = (behind - points[i][0]) / (points[i + 1][0] - points[i][0]);
             lengths[i] + share * (lengths[i + 1] - lengths[i])
         });
-        let chain = |chain, from_m, to_m, largest_m| Chain { chain, from_m, to_m, largest_m };
+        let chain = |name, from_m, to_m, largest_m| Chain { name, from_m, to_m, largest_m };
         let mut chains = vec![
             chain(PlaceChain::Ground, lengths[marks.brow], ground_end, large),
             chain(PlaceChain::Face, lengths[marks.lip], lengths[marks.brow], large),
