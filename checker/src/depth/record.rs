@@ -22,7 +22,7 @@ const FEWEST_MESHES: usize = 2;
 const MOST_MESHES: usize = 5;
 
 /// A probe's error counts relative to its own stress, but to no less than this share of the weight of the cliff's height.
-pub const PROBE_FLOOR: f64 = 0.02;
+pub(super) const PROBE_FLOOR: f64 = 0.02;
 
 /// What is the same at every depth.
 #[derive(Debug)]
