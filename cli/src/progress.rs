@@ -3,6 +3,7 @@ use std::io::{IsTerminal, Write};
 use std::sync::{Mutex, PoisonError};
 use std::time::{Duration, Instant};
 
+use checker::assess::Progress;
 use indicatif::{ProgressBar, ProgressDrawTarget, ProgressStyle};
 
 /// Least time between two lines off a terminal.
@@ -18,6 +19,15 @@ pub fn say(line: &str) {
 #[derive(Debug)]
 pub struct Reporter {
     kind: Kind,
+    stage: Mutex<Stage>,
+}
+
+/// What is being done, and how far it is.
+#[derive(Debug, Default)]
+struct Stage {
+    name: String,
+    done: usize,
+    total: usize,
 }
 
 #[derive(Debug)]
@@ -31,19 +41,23 @@ impl Reporter {
     /// A bar if standard error is a terminal, lines if not, nothing if `quiet`.
     pub fn new(quiet: bool) -> Self {
         if quiet {
-            return Self { kind: Kind::Silent };
+            return Self::of(Kind::Silent);
         }
         if !std::io::stderr().is_terminal() {
-            return Self { kind: Kind::Lines(Mutex::new(None)) };
+            return Self::of(Kind::Lines(Mutex::new(None)));
         }
         let bar = ProgressBar::with_draw_target(None, ProgressDrawTarget::stderr_with_hz(10));
         let style = ProgressStyle::with_template("{msg:<36} [{bar:30}] {pos}/{len} {elapsed}");
         bar.set_style(style.unwrap_or_else(|_| ProgressStyle::default_bar()).progress_chars("=> "));
-        Self { kind: Kind::Bar(bar) }
+        Self::of(Kind::Bar(bar))
+    }
+
+    fn of(kind: Kind) -> Self {
+        Self { kind, stage: Mutex::default() }
     }
 
     /// `done` of `total` steps of `what` are done.
-    pub fn step(&self, what: &str, done: usize, total: usize) {
+    pub fn show(&self, what: &str, done: usize, total: usize) {
         match &self.kind {
             Kind::Silent => {}
             Kind::Bar(bar) => {
@@ -60,6 +74,27 @@ impl Reporter {
         if let Kind::Bar(bar) = &self.kind {
             bar.finish_and_clear();
         }
+    }
+}
+
+impl Progress for Reporter {
+    fn begin(&self, stage: &str, total: usize) {
+        let mut now = self.stage.lock().unwrap_or_else(PoisonError::into_inner);
+        // A stage that begins again goes on where it was, with a new total.
+        let done = if now.name == stage { now.done } else { 0 };
+        *now = Stage { name: stage.to_owned(), done, total };
+        self.show(stage, done, total);
+    }
+
+    fn step(&self) {
+        let mut now = self.stage.lock().unwrap_or_else(PoisonError::into_inner);
+        now.done += 1;
+        self.show(&now.name, now.done, now.total.max(now.done));
+    }
+
+    /// Never: an interruption ends the process, see [`crate::interrupt`].
+    fn cancelled(&self) -> bool {
+        false
     }
 }
 

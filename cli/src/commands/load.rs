@@ -14,7 +14,7 @@ pub(crate) fn load(path: &Path, form: DiagnosticsForm) -> Result<LoadedModel, Ex
     match model_file::read(path) {
         Ok(loaded) => {
             show(&loaded.warnings, form);
-            // what only the section or the strengths show
+            // Step 2: what only the section and the strengths show.
             match checker::assess::prepare(&loaded.model) {
                 Ok(prepared) => show(&loaded.locate(&prepared.warnings), form),
                 Err(faults) => {

@@ -40,11 +40,10 @@ pub(crate) fn run(scope: Scope, args: &RunArgs, interrupt: &Interrupt) -> Exit {
     };
     // Step 2: the analysis.
     let reporter = Reporter::new(args.quiet);
-    let results = analysis::run(&loaded.model, scope, args.threads, &reporter);
-    reporter.finish();
-    let mut results = match results {
+    let threads = args.threads.map_or_else(all_threads, usize::from);
+    let mut results = match analysis::run(&loaded, scope, threads, args.diagnostics, &reporter) {
         Ok(results) => results,
-        Err(message) => return fail(Exit::Analysis, &message),
+        Err(exit) => return exit,
     };
     let provenance = identify(&mut results.outcome, &loaded, scope, args);
     // Step 3: files, then the summary, so that it only claims what was written.
@@ -55,7 +54,7 @@ pub(crate) fn run(scope: Scope, args: &RunArgs, interrupt: &Interrupt) -> Exit {
         provenance: &provenance,
         letterhead: letterhead.ok().flatten(),
         linear_triangles: args.linear_triangles,
-        threads: args.threads.map_or_else(all_threads, usize::from),
+        threads,
     };
     let written = match staging.map(|staging| write::all(&job, staging, &reporter)).transpose() {
         Ok(written) => written,

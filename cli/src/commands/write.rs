@@ -1,7 +1,8 @@
 //! Which command writes which files.
 use std::path::Path;
 
-use super::analysis::{Results, Scope};
+use checker::assess::{Assessment, Scope};
+
 use crate::exit::Exit;
 use crate::model_file::LoadedModel;
 use crate::output::figures::Figures;
@@ -16,7 +17,7 @@ pub(crate) struct Job<'a> {
     /// Command.
     pub scope: Scope,
     /// Results with fields.
-    pub results: &'a Results,
+    pub results: &'a Assessment,
     /// Model with the files it came from.
     pub loaded: &'a LoadedModel,
     /// Provenance.
@@ -74,7 +75,7 @@ pub(crate) fn all(job: &Job<'_>, mut staging: Staging, reporter: &Reporter) -> R
         staging.write(name, text.as_bytes())?;
     }
     if job.scope == Scope::Assess {
-        reporter.step("writing the report", 0, 1);
+        reporter.show("writing the report", 0, 1);
         staging.write("report.html", report(job, &figures)?.as_bytes())?;
     }
     for (name, bytes) in model_files(job.loaded) {
@@ -110,7 +111,7 @@ fn fields(job: &Job<'_>, staging: &mut Staging, reporter: &Reporter) -> Result<(
     // As many at a time as there are threads: the texts are large.
     for (i_batch, batch) in fields.chunks(job.threads).enumerate() {
         let first = i_batch * job.threads;
-        reporter.step("writing fields", first, fields.len());
+        reporter.show("writing fields", first, fields.len());
         let texts: Vec<_> = std::thread::scope(|scope| {
             let started: Vec<_> = batch.iter().map(|snapshot| scope.spawn(|| vtk::field(snapshot, job.linear_triangles))).collect();
             started.into_iter().map(|thread| thread.join().unwrap_or_else(|panic| std::panic::resume_unwind(panic))).collect()

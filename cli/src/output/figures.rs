@@ -52,7 +52,7 @@ impl<'a> Figures<'a> {
     /// A contour figure; `id` is unique on the page.
     pub fn field(&self, quantity: Quantity, snapshot: &FieldSnapshot, id: &str) -> Picture {
         let governing = self.governing(snapshot.depth_m);
-        let value = governing.map(|check| format!("{} \u{b1} {}", words::utilization(check), words::fixed(check.error, 3)));
+        let value = governing.map(|check| format!("{} \u{b1} {}", words::utilization(check), words::error(check.error)));
         let is_critical = self.critical.is_some_and(|critical| (critical.depth_m - snapshot.depth_m).abs() < SAME_DEPTH_M);
         let line = self.outcome.critical_depth.as_ref().and_then(|critical| critical.cautious.rupture_line);
         let marks = Marks {

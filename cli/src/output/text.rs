@@ -34,6 +34,7 @@ pub fn summary(outcome: &Outcome, provenance: &Provenance, parts: TextParts) -> 
     answer(&mut out, outcome, parts);
     reservations(&mut out, outcome);
     if parts.tables {
+        defaults(&mut out, outcome);
         line(&mut out, "");
         line(&mut out, &format!("{} {}, {}", outcome.program.name, outcome.program.version, provenance.command));
         line(&mut out, &format!("model {} (sha256 {})", printable(&outcome.model.file), outcome.model.sha256));
@@ -73,13 +74,6 @@ fn heading(out: &mut String, outcome: &Outcome) {
             words::meters(section.surveyed_depth_m)
         ),
     );
-    let defaults = outcome.model.defaults_used.len();
-    if 0 < defaults {
-        line(out, &format!("{defaults} values are DEFAULT, not from the file:"));
-        for default in &outcome.model.defaults_used {
-            line(out, &format!("  DEFAULT {}", printable(default)));
-        }
-    }
 }
 
 fn checks(out: &mut String, outcome: &Outcome) {
@@ -107,7 +101,7 @@ fn checks(out: &mut String, outcome: &Outcome) {
             words::demand(check),
             capacity(check),
             words::utilization(check),
-            words::fixed(check.error, 3),
+            words::error(check.error),
             check.background_kpa.map_or_else(|| "-".into(), |value| format!("{} kPa", words::figures(value))),
             check.closed_form_demand_kpa.map_or_else(|| "-".into(), |value| format!("{} kPa", words::figures(value))),
             if check.over { "OVER".into() } else { "under".to_owned() },
@@ -193,7 +187,7 @@ fn hangs_on(out: &mut String, outcome: &Outcome) {
         return;
     }
     line(out, "");
-    line(out, "What the answer hangs on (one at a time)");
+    line(out, "What the answer hangs on (one at a time, the others at their mean)");
     let mut table = Table::new(&["quantity", "low", "high", "utilization today", "critical depth (m)"]);
     for row in &outcome.hangs_on {
         let number = |value: f64| format!("{} {}", words::plain(value), row.unit).trim_end().to_owned();
@@ -258,6 +252,17 @@ fn reservations(out: &mut String, outcome: &Outcome) {
         line(out, "Cautions");
         for caution in &outcome.cautions {
             line(out, &format!("- {}", printable(caution)));
+        }
+    }
+}
+
+fn defaults(out: &mut String, outcome: &Outcome) {
+    let defaults = &outcome.model.defaults_used;
+    if !defaults.is_empty() {
+        line(out, "");
+        line(out, &format!("{} values are DEFAULT, not from the file:", defaults.len()));
+        for default in defaults {
+            line(out, &format!("  DEFAULT {}", printable(default)));
         }
     }
 }

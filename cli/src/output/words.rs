@@ -33,6 +33,11 @@ pub fn plain(value: f64) -> String {
     if text.contains('.') && !text.contains('e') { text.trim_end_matches('0').trim_end_matches('.').to_owned() } else { text }
 }
 
+/// A numerical error of a utilization; one that would read as zero says that it is small.
+pub fn error(value: f64) -> String {
+    if 0.0 < value && value < 0.0005 { "< 0.001".to_owned() } else { fixed(value, 3) }
+}
+
 /// A length in m with two decimals and its unit.
 pub fn meters(value_m: f64) -> String {
     format!("{} m", fixed(value_m, 2))

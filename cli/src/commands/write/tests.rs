@@ -1,12 +1,12 @@
 //! The whole results folder, made from invented results.
 use std::path::PathBuf;
 
-use super::super::analysis::{Results, Scope};
 use super::{Job, all};
 use crate::interrupt::Interrupt;
 use crate::output::fixture;
 use crate::output::folder::Staging;
 use crate::progress::Reporter;
+use checker::assess::{Assessment, Scope};
 
 /// Where the folder is written: a scratch place, or the one named in the environment for looking at it.
 fn place() -> PathBuf {
@@ -19,7 +19,7 @@ fn assess_writes_every_file_of_the_contract() {
     let target = place();
     let mut fields = fixture::fields();
     fields.sort_by(|a, b| a.depth_m.total_cmp(&b.depth_m));
-    let results = Results { outcome: fixture::outcome(), fields };
+    let results = Assessment { outcome: fixture::outcome(), fields, warnings: Vec::new() };
     let starter = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("../demo-models/ostrel-head/ostrel-head.toml");
     let mut loaded = crate::model_file::read(&starter).unwrap();
     (loaded.model, loaded.text, loaded.file_name) = (fixture::model(), fixture::MODEL_TEXT.into(), "gannet-ledge.toml".into());

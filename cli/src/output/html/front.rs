@@ -120,7 +120,7 @@ fn today(outcome: &Outcome, model: &Model) -> String {
 
 fn with_error(check: &CheckResult) -> String {
     match check.utilization {
-        Some(_) => format!("{} \u{b1} {}", words::utilization(check), words::fixed(check.error, 3)),
+        Some(_) => format!("{} \u{b1} {}", words::utilization(check), words::error(check.error)),
         None => words::utilization(check),
     }
 }

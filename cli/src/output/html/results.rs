@@ -79,9 +79,10 @@ fn values(check: Option<&CheckResult>) -> [Cell; 3] {
     [
         Cell::number(check.demand_kpa, signed(check) + unit),
         Cell::number(check.capacity_kpa, figures(check.capacity_kpa) + unit),
-        check
-            .utilization
-            .map_or_else(|| Cell::text(&utilization), |value| Cell::number(value, format!("{utilization} ± {}", fixed(check.error, 3)))),
+        check.utilization.map_or_else(
+            || Cell::text(&utilization),
+            |value| Cell::number(value, format!("{utilization} ± {}", words::error(check.error))),
+        ),
     ]
 }
 
@@ -142,7 +143,8 @@ pub fn each_critical(outcome: &Outcome) -> Table {
 /// What the answer hangs on.
 pub fn hangs_on(outcome: &Outcome) -> Table {
     let head = ["quantity", "low", "high", "utilization at low", "at high", "critical depth at low (m)", "at high (m)"];
-    let mut table = Table::new("hangs-on", "What the answer hangs on: one quantity at a time, the others as given", &head);
+    let mut table =
+        Table::new("hangs-on", "What the answer hangs on: one quantity at a time, the others at their mean (best estimate)", &head);
     for row in &outcome.hangs_on {
         let unit = |value: f64| format!("{} {}", words::plain(value), row.unit).trim_end().to_owned();
         let two = |value: f64| fixed(value, 2);

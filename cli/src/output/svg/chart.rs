@@ -143,7 +143,7 @@ fn curves(svg: &mut Svg, plot: &Plot, cautious: &[(f64, &CheckResult)], best: &[
             words::demand(check),
             check.situation,
             words::utilization(check),
-            words::fixed(check.error, 3)
+            words::error(check.error)
         );
         svg.raw(&format!(
             "<circle class=\"hit\" cx=\"{:.1}\" cy=\"{:.1}\" r=\"9\" data-depth=\"{}\" data-demand=\"{}\"><title>{}</title></circle>",
@@ -193,9 +193,9 @@ pub fn hangs_on(outcome: &Outcome) -> Option<Picture> {
     if outcome.hangs_on.is_empty() {
         return None;
     }
-    let cautious = outcome.critical_depth.as_ref().map(|critical| &critical.cautious);
+    let best = outcome.critical_depth.as_ref().map(|critical| &critical.best_estimate);
     let by_depth = outcome.hangs_on.iter().any(|row| row.critical_depth_m.iter().any(Option::is_some));
-    let limit = cautious.map_or(0.0, |critical| critical.searched_to_m);
+    let limit = best.map_or(0.0, |critical| critical.searched_to_m);
     let ends = |row: &HangsOn| if by_depth { row.critical_depth_m } else { row.utilization };
     let mut rows: Vec<&HangsOn> = outcome.hangs_on.iter().collect();
     let reach = |row: &&HangsOn| {
@@ -203,7 +203,7 @@ pub fn hangs_on(outcome: &Outcome) -> Option<Picture> {
         (b - a).abs()
     };
     rows.sort_by(|a, b| reach(b).total_cmp(&reach(a)));
-    let base = if by_depth { cautious.and_then(|critical| critical.depth_m) } else { governing(outcome) };
+    let base = if by_depth { best.and_then(|critical| critical.depth_m) } else { governing(outcome) };
     let mut svg = Svg::default();
     let height = 34.0 * rows.len() as f64;
     let known = rows.iter().flat_map(|row| ends(row)).flatten().chain(base);
@@ -222,13 +222,14 @@ pub fn hangs_on(outcome: &Outcome) -> Option<Picture> {
         width: 900.0,
         height: plot.top + height + 48.0,
         title: "What the answer hangs on, one quantity at a time".to_owned(),
-        description: "Longest bar first. The upright line is the answer with the values as given, cautious inputs.".to_owned(),
+        description: "Longest bar first. The upright line is the answer with mean inputs (best estimate).".to_owned(),
         body: svg.body,
     })
 }
 
 fn governing(outcome: &Outcome) -> Option<f64> {
-    outcome.surveyed.governing.as_ref().and_then(|governing| governing.utilization)
+    let best = outcome.surveyed.checks.iter().filter(|check| check.inputs == "best estimate");
+    crate::output::text::worst(best).and_then(|check| check.utilization)
 }
 
 fn bar_axes(svg: &mut Svg, plot: &Plot, name: &str) {
@@ -246,7 +247,7 @@ fn bar_axes(svg: &mut Svg, plot: &Plot, name: &str) {
 fn bar(svg: &mut Svg, plot: &Plot, row: &HangsOn, ends: [Option<f64>; 2], top: f64) {
     let unit = if row.unit.is_empty() { String::new() } else { format!(" {}", row.unit) };
     let name: String =
-        if 44 < row.what.chars().count() { row.what.chars().take(43).chain(['\u{2026}']).collect() } else { row.what.clone() };
+        if 39 < row.what.chars().count() { row.what.chars().take(38).chain(['\u{2026}']).collect() } else { row.what.clone() };
     svg.text([plot.left - 12.0, top + 14.0], Anchor::End, "label", &name);
     let range = format!("{} to {}{unit}", words::plain(row.low), words::plain(row.high));
     svg.text([plot.left - 12.0, top + 28.0], Anchor::End, "tick", &range);

@@ -303,6 +303,8 @@ fn places(svg: &mut Svg, snapshot: &FieldSnapshot, frame: &Frame, marks: &Marks<
             y += 15.0;
         }
         if !frame.shows(*at) {
+            svg.text([x + 15.0, y - 2.0], Anchor::Start, "label small", "not in the picture");
+            y += 15.0;
             continue;
         }
         let px = frame.px(*at);

@@ -32,7 +32,8 @@ impl Frame {
         }
         let far_m = outcome.numerics.extent.landward_x_m;
         let near_m = outcome.numerics.extent.seaward_x_m;
-        let x_m = [(brow[0] - 0.65 * height_m).max(near_m), right_m.min(far_m)];
+        let seaward_m = [section.lip, section.mouth].iter().flatten().fold(brow[0], |least, p| least.min(p[0]));
+        let x_m = [(seaward_m - 0.6 * height_m).max(near_m), right_m.min(far_m)];
         let top_m = section.surface.iter().filter(|p| p[0] <= x_m[1]).fold(brow[1], |top, p| top.max(p[1]));
         let z_m = [(lowest_m - 0.22 * height_m).max(outcome.numerics.extent.base_z_m), top_m + 0.14 * height_m];
         Self { x_m, z_m, left, top, px_per_m: width / (x_m[1] - x_m[0]) }
