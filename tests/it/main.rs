@@ -2,3 +2,4 @@
 #![expect(clippy::unwrap_used, clippy::disallowed_methods, reason = "tests read files and the clock, and fail by panicking")]
 mod diagnostics;
 mod reference_cases;
+mod tidy;
