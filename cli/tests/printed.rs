@@ -68,7 +68,9 @@ fn same_word(a: &str, b: &str) -> bool {
 
 fn same_line(a: &str, b: &str) -> bool {
     // rules under a table's head are as wide as its widest entry
-    let words = |line: &str| line.split_whitespace().filter(|w| w.trim_matches('-').len() > 0 || *w == "-").map(str::to_owned).collect::<Vec<_>>();
+    let words = |line: &str| {
+        line.split_whitespace().filter(|w| !w.trim_matches('-').is_empty() || *w == "-").map(str::to_owned).collect::<Vec<_>>()
+    };
     let (a, b) = (words(a), words(b));
     a.len() == b.len() && a.iter().zip(&b).all(|(a, b)| same_word(a, b))
 }
@@ -95,7 +97,13 @@ fn check(page: &str) {
         let now = section(&outputs[&quote.args], &quote.from);
         let quoted = &lines[quote.lines.clone()];
         let same = now.len() == quoted.len() && now.iter().zip(quoted).all(|(a, b)| same_line(a, b));
-        assert!(same, "{page} quotes\n{}\nbut `{}` prints\n{}\n(BRINKLINE_UPDATE=1 writes it anew)", quoted.join("\n"), quote.args, now.join("\n"));
+        assert!(
+            same,
+            "{page} quotes\n{}\nbut `{}` prints\n{}\n(BRINKLINE_UPDATE=1 writes it anew)",
+            quoted.join("\n"),
+            quote.args,
+            now.join("\n")
+        );
     }
 }
 

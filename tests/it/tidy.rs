@@ -18,18 +18,8 @@ const LONGEST_FILE: usize = 500;
 /// Longest DEVELOPERS.md, lines.
 const LONGEST_DEVELOPERS: usize = 200;
 /// Licenses of which every dependency must offer one in each of its parts.
-const LICENSES: [&str; 10] = [
-    "MIT",
-    "Apache-2.0",
-    "BSD-2-Clause",
-    "BSD-3-Clause",
-    "ISC",
-    "Zlib",
-    "Unlicense",
-    "Unicode-3.0",
-    "0BSD",
-    "CC0-1.0",
-];
+const LICENSES: [&str; 10] =
+    ["MIT", "Apache-2.0", "BSD-2-Clause", "BSD-3-Clause", "ISC", "Zlib", "Unlicense", "Unicode-3.0", "0BSD", "CC0-1.0"];
 /// Folders that hold nothing written by hand.
 const NOT_OURS: [&str; 4] = [".git", "target", "node_modules", "results"];
 /// Endings of the files that are read for words.
@@ -292,4 +282,19 @@ fn every_demo_has_its_page() {
         n_demos += 1;
     }
     assert!(n_demos >= 4, "{n_demos} demos");
+}
+
+/// Tests that the page of verifications names exist.
+#[test]
+fn every_test_that_the_verification_names_exists() {
+    let page = text_of("docs/verification.md");
+    let sources: String =
+        sources().into_iter().filter(|(name, _)| is_tests(name) || name.starts_with("tests/")).map(|(_, text)| text).collect();
+    let mut wrong = Vec::new();
+    for row in page.lines().filter(|line| line.starts_with('|')) {
+        let named = row.split('`').skip(1).step_by(2).filter(|name| name.contains('_') && !name.contains('/'));
+        let missing = named.filter(|name| !sources.contains(&format!("fn {name}(")) && !sources.contains(&format!(" {name},")));
+        wrong.extend(missing.map(str::to_owned));
+    }
+    none(&wrong, "tests that do not exist");
 }
