@@ -2,7 +2,7 @@
 //!
 //! A page quotes by a line `<!-- printed by: brinkline ARGS | from: WORDS -->` before a block: the block holds the lines of the
 //! output from the first that begins with WORDS up to the next empty one. These are this program's own numbers: regression pins, no
-//! verification. With `BRINKLINE_UPDATE=1` the blocks are written anew; a number that moved then belongs into CHANGELOG.md under Results.
+//! verification. With `BRINKLINE_UPDATE_DOCS=1` the blocks are written anew; a number that moved then belongs into CHANGELOG.md under Results.
 #![expect(clippy::unwrap_used, clippy::disallowed_methods, reason = "tests read files and fail by panicking")]
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
@@ -86,7 +86,7 @@ fn check(page: &str) {
     for quote in &quotes {
         outputs.entry(quote.args.clone()).or_insert_with(|| printed(path.parent().unwrap(), &quote.args));
     }
-    if std::env::var_os("BRINKLINE_UPDATE").is_some() {
+    if std::env::var_os("BRINKLINE_UPDATE_DOCS").is_some() {
         for quote in quotes.iter().rev() {
             lines.splice(quote.lines.clone(), section(&outputs[&quote.args], &quote.from));
         }
@@ -99,7 +99,7 @@ fn check(page: &str) {
         let same = now.len() == quoted.len() && now.iter().zip(quoted).all(|(a, b)| same_line(a, b));
         assert!(
             same,
-            "{page} quotes\n{}\nbut `{}` prints\n{}\n(BRINKLINE_UPDATE=1 writes it anew)",
+            "{page} quotes\n{}\nbut `{}` prints\n{}\n(BRINKLINE_UPDATE_DOCS=1 writes it anew)",
             quoted.join("\n"),
             quote.args,
             now.join("\n")
