@@ -1,7 +1,7 @@
 //! What pages quote from the program is what the program prints.
 //!
-//! A page quotes by a line `<!-- printed by: brinkline ARGS | from: WORDS -->` before a block: the block holds the lines of the
-//! output from the first that begins with WORDS up to the next empty one. These are this program's own numbers: regression pins, no
+//! A page quotes by a line `<!-- printed by: brinkline ARGS | from: WORDS | lines: N -->` before a block: the block holds the lines of
+//! the output from the first that begins with WORDS up to the next empty one, at most N. These are this program's own numbers: regression pins, no
 //! verification. With `BRINKLINE_UPDATE_DOCS=1` the blocks are written anew; a number that moved then belongs into CHANGELOG.md under Results.
 #![expect(clippy::unwrap_used, clippy::disallowed_methods, reason = "tests read files and fail by panicking")]
 use std::collections::BTreeMap;
@@ -14,6 +14,7 @@ const MARK: &str = "<!-- printed by: brinkline ";
 struct Quote {
     args: String,
     from: String,
+    most: usize,
     /// Lines of the page that hold the quoted text.
     lines: std::ops::Range<usize>,
 }
@@ -26,10 +27,11 @@ fn quotes(page: &[&str]) -> Vec<Quote> {
     let mut all = Vec::new();
     for (i, line) in page.iter().enumerate() {
         let Some(rest) = line.strip_prefix(MARK) else { continue };
-        let (args, from) = rest.strip_suffix(" -->").unwrap().split_once(" | from: ").unwrap();
+        let (args, rest) = rest.strip_suffix(" -->").unwrap().split_once(" | from: ").unwrap();
+        let (from, most) = rest.split_once(" | lines: ").map_or((rest, usize::MAX), |(from, n)| (from, n.parse().unwrap()));
         let start = (i..page.len()).find(|&k| page[k].starts_with("```")).unwrap() + 1;
         let end = (start..page.len()).find(|&k| page[k].starts_with("```")).unwrap();
-        all.push(Quote { args: args.to_owned(), from: from.to_owned(), lines: start..end });
+        all.push(Quote { args: args.to_owned(), from: from.to_owned(), most, lines: start..end });
     }
     all
 }
@@ -48,10 +50,10 @@ fn printed(folder: &Path, args: &str) -> String {
     String::from_utf8(output.stdout).unwrap()
 }
 
-fn section<'a>(text: &'a str, from: &str) -> Vec<&'a str> {
-    let lines = text.lines().skip_while(|line| !line.starts_with(from));
-    let found: Vec<&str> = lines.take_while(|line| !line.is_empty()).map(str::trim_end).collect();
-    assert!(!found.is_empty(), "nothing printed begins with `{from}`");
+fn section<'a>(text: &'a str, quote: &Quote) -> Vec<&'a str> {
+    let lines = text.lines().skip_while(|line| !line.starts_with(&quote.from));
+    let found: Vec<&str> = lines.take_while(|line| !line.is_empty()).take(quote.most).map(str::trim_end).collect();
+    assert!(!found.is_empty(), "nothing printed begins with `{}`", quote.from);
     found
 }
 
@@ -88,13 +90,13 @@ fn check(page: &str) {
     }
     if std::env::var_os("BRINKLINE_UPDATE_DOCS").is_some() {
         for quote in quotes.iter().rev() {
-            lines.splice(quote.lines.clone(), section(&outputs[&quote.args], &quote.from));
+            lines.splice(quote.lines.clone(), section(&outputs[&quote.args], quote));
         }
         std::fs::write(&path, format!("{}\n", lines.join("\n"))).unwrap();
         return;
     }
     for quote in &quotes {
-        let now = section(&outputs[&quote.args], &quote.from);
+        let now = section(&outputs[&quote.args], quote);
         let quoted = &lines[quote.lines.clone()];
         let same = now.len() == quoted.len() && now.iter().zip(quoted).all(|(a, b)| same_line(a, b));
         assert!(
