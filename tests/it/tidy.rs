@@ -142,9 +142,8 @@ fn every_source_file_says_what_it_is_for_and_stays_short() {
     assert!(sources.len() > 100, "{} sources found", sources.len());
     let mut wrong = Vec::new();
     for (name, text) in &sources {
-        // `thing/tests.rs` says by its name what it is for; an included file cannot begin with such a line
-        let included = text.lines().next().is_some_and(|line| line.contains("Included by")) || text.contains("// Included by");
-        let named = name.ends_with("/tests.rs") || (name.contains("/shared/") && included) || name.contains("/benches/shared/");
+        // `thing/tests.rs` says by its name what it is for; a file that others include cannot begin with such a line
+        let named = name.ends_with("/tests.rs") || name.contains("/benches/shared/");
         if !named && !text.starts_with("//! ") {
             wrong.push(format!("{name} does not begin with `//!`"));
         }
