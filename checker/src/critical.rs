@@ -53,7 +53,7 @@ pub struct Crossing {
 /// ```
 ///
 /// `curvature` is how far the parabola through the nearest third point moves the root. The error never exceeds what the
-/// bracket leaves open plus the mesh error over the slope.
+/// bracket leaves open plus the mesh error over the slope. Source: docs/theory.md eq. (6.13), docs/theory.md eq. (6.14).
 pub fn first_crossing(series: &[Point], from_m: f64) -> Option<Crossing> {
     let start = series.iter().position(|p| from_m <= p.depth_m)?;
     let i = (start + 1..series.len()).find(|&i| series[i - 1].excess <= 0.0 && 0.0 < series[i].excess)?;

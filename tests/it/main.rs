@@ -3,3 +3,4 @@
 mod diagnostics;
 mod main_job;
 mod reference_cases;
+mod tidy;

@@ -4,7 +4,7 @@ use super::load_cases::{CaseSet, LoadCase};
 /// In-situ effective stress `[xx, zz, xz]` of a unit load case in Pa at a point of a layer, tension positive.
 ///
 /// `overburden_m[j]` is the thickness of layer `j` in the column above the point up to the un-eroded surface. Source:
-/// docs/theory.md, in-situ state.
+/// docs/theory.md eq. (4.1).
 pub fn in_situ_pa(case: LoadCase, layer: usize, overburden_m: &[f64]) -> [f64; 3] {
     match case {
         LoadCase::Weight { layer: above } => [0.0, -overburden_m[above], 0.0],

@@ -95,7 +95,9 @@ pub fn prepare(model: &Model) -> Result<Prepared<'_>, Vec<Diagnostic>> {
             match design(rock, inputs, &model.checks.partial_factors, site.cliff_height_m()) {
                 Ok(resolved) => {
                     warnings.extend(resolved.warnings.into_iter().filter(|_| inputs == Inputs::Cautious));
-                    notes.extend(resolved.value.notes);
+                    // what was done to the means is in the model file; the cautious values are the ones to explain
+                    let said = resolved.value.notes.into_iter().filter(|_| inputs == Inputs::Cautious);
+                    notes.extend(said.map(|note| format!("`{}`: {note}", rock.name)));
                     strengths.push(match resolved.value.capacity {
                         RockCapacity::Resists(strength) => Some(strength),
                         RockCapacity::NoStrength => None,

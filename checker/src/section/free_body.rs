@@ -48,7 +48,8 @@ impl Section {
     /// ```
     ///
     /// with `m(x)` the lowest of the contacts of layers `0 ..= j` gives the share of these layers together; differences give
-    /// each layer. Straight pieces are integrated exactly (they are split where a contact bends or is crossed), arcs in steps of
+    /// each layer: docs/theory.md eq. (3.9).
+    /// Straight pieces are integrated exactly (they are split where a contact bends or is crossed), arcs in steps of
     /// 0.02 rad by a rule of degree 5. The ends of `line` are moved to the nearest points of the surface.
     pub fn free_body(&self, line: [[f64; 2]; 2]) -> FreeBody {
         let surface = self.surface();

@@ -63,6 +63,8 @@ impl Hollow {
 
     /// The hollow at a depth, walked from mouth to lip.
     ///
+    /// Source: docs/theory.md eq. (3.6), docs/theory.md eq. (3.7).
+    ///
     /// Every shape is the reference under a map that grows in x and grows in z, so that it cannot cross itself.
     /// "Advance": points landward of `x_back - w` are moved, those between the lip and there are scaled horizontally about the
     /// lip; `w = min(hollow height, half the reference depth)`. When the seaward part is used up the rest is scaled toward the

@@ -31,7 +31,7 @@ pub struct Touch {
 /// tan phi_m = t / F     demand = R cos phi_m     sigma_f = p - R sin phi_m     capacity = c' + sigma_f t
 /// ```
 ///
-/// so that demand / capacity = 1 / F exactly.
+/// so that demand / capacity = 1 / F exactly. Source: docs/theory.md eq. (6.4), docs/theory.md eq. (6.5).
 ///
 /// | name        | shape | unit | meaning                                                     |
 /// |-------------|-------|------|-------------------------------------------------------------|
