@@ -3,6 +3,7 @@ mod context;
 mod critical_depths;
 mod describe;
 mod mesh_only;
+mod outlook;
 mod series;
 mod vary;
 

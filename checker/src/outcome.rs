@@ -52,6 +52,9 @@ pub struct Outcome {
     pub hangs_on: Vec<HangsOn>,
     /// Use below.
     pub below: BelowInfo,
+    /// Years, probability, setback; `None` where they were not asked for.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub outlook: Option<OutlookInfo>,
     /// Reservations.
     pub warnings: Vec<Note>,
     /// The usual cautions.

@@ -84,7 +84,7 @@ fn left_out_note(each: &[CheckCriticalDepth], inputs: InputCase) -> Option<Strin
 }
 
 /// The rupture line of a governing check at a solved depth.
-fn rupture(model: &Model, solved: &Solved, found: &Found, averaging_length_m: f64) -> Option<Rupture> {
+pub(super) fn rupture(model: &Model, solved: &Solved, found: &Found, averaging_length_m: f64) -> Option<Rupture> {
     let record = &solved.record;
     let bending_pa: Vec<f64> = record
         .lines

@@ -33,9 +33,18 @@ impl Run<'_> {
         let numerics = self.numerics(&solved, surveyed_m);
         let warnings = notes::warnings(self.prepared, &solved, &numerics, critical_depths.as_ref());
         let missed = numerics.target_error < numerics.reached_error;
+        let outlook = match (&critical_depths, self.scope) {
+            (Some(critical), Scope::Assess) => self.outlook(&solved, critical, &surveyed, missed),
+            _ => None,
+        };
+        let part_refused = outlook.as_ref().is_some_and(|o| !o.refused.is_empty());
         let outcome = Outcome {
             program: Program::default(),
-            status: if missed { Status::TargetMissed } else { Status::Complete },
+            status: match (missed, part_refused) {
+                (true, _) => Status::TargetMissed,
+                (false, true) => Status::PartRefused,
+                (false, false) => Status::Complete,
+            },
             headline: self.headline(&surveyed, critical_depths.as_ref()),
             model: ModelInfo { title: model.title.clone(), defaults_used: model.defaults_used.clone(), ..ModelInfo::default() },
             report: report_info(model),
@@ -46,6 +55,7 @@ impl Run<'_> {
             depths: solved.iter().map(depth_result).collect(),
             hangs_on,
             below: self.below(),
+            outlook,
             warnings,
             cautions: CAUTIONS.iter().map(|c| (*c).to_owned()).collect(),
         };

@@ -102,7 +102,7 @@ fn sampled(input: &AssessInput) -> Result<OutlookInfo, Refusal> {
     let growth = Growth::new(&rate.0).map_err(|e| refuse("outlook.rate", e.to_string()))?;
     let latest = outlook.assets.iter().filter_map(|a| a.accepted.as_ref()).map(|a| a.over_yr).fold(outlook.horizon_yr, f64::max);
     let timeline = Timeline::new(&growth, latest).map_err(|e| refuse("outlook.storms", e.to_string()))?;
-    searched_far_enough(input, &timeline)?;
+    searched_far_enough(input, &timeline, latest)?;
 
     let depth_indices: Vec<usize> = (input.today_index..input.demand.depths_m.len()).collect();
     let draws = Draws::plain(outlook.seed);
@@ -177,15 +177,15 @@ fn rate_of(input: &AssessInput) -> Result<(GrowthParams, String), Refusal> {
 }
 
 /// Refuses when the undercut may grow beyond the depths searched more often than a tenth of the smallest accepted chance.
-fn searched_far_enough(input: &AssessInput, timeline: &Timeline) -> Result<(), Refusal> {
+fn searched_far_enough(input: &AssessInput, timeline: &Timeline, latest_yr: f64) -> Result<(), Refusal> {
     let last_m = input.demand.depths_m[input.demand.depths_m.len() - 1];
-    let horizon = &timeline.growth[timeline.index_at(input.outlook.horizon_yr)];
+    let horizon = &timeline.growth[timeline.index_at(latest_yr)];
     let allowed = BEYOND_SHARE * input.smallest_accepted().unwrap_or(CHANCE_WITHOUT_ASSETS);
     let beyond = horizon.exceedance(last_m - input.today_m());
     if allowed < beyond {
         let needed = input.today_m() + horizon.exceeded_with(allowed);
         let reason = format!(
-            "by the horizon the undercut lies beyond the searched {last_m:.1} m with a chance of {beyond:.1e}, more than {allowed:.1e}: \
+            "in {latest_yr} years the undercut lies beyond the searched {last_m:.1} m with a chance of {beyond:.1e}, more than {allowed:.1e}: \
              set search_to_depth_m to {needed:.1} or more, or shorten the horizon"
         );
         return Err(Refusal { code: "outlook.search-depth", reason });

@@ -48,6 +48,19 @@ pub struct ModelInputs {
     model_factor: usize,
 }
 
+impl ModelInputs {
+    /// Place of a rock's strengths in the demand model's list.
+    pub fn strength_entry(&self, rock: usize) -> Option<usize> {
+        self.strengths[rock]?;
+        Some(self.strengths[..rock].iter().flatten().count())
+    }
+
+    /// Input of a rock's unit weight.
+    pub fn unit_weight_input(&self, rock: usize) -> Option<usize> {
+        self.unit_weight[rock]
+    }
+}
+
 /// Collects inputs with their names.
 #[derive(Default)]
 struct Collector {

@@ -21,18 +21,21 @@ pub struct Timeline {
 }
 
 impl Timeline {
-    /// Every year to the horizon, the horizon itself, and from there steps of 10 % to twenty horizons.
+    /// Every year to the horizon, the horizon itself, and from there steps of 10 % to twenty horizons, or as far as storms can be summed.
     ///
     /// # Errors
-    /// That of [`Growth::by`].
+    /// That of [`Growth::by`] within the horizon.
     pub fn new(growth: &Growth, horizon_yr: f64) -> Result<Self, GrowthError> {
         let mut times_yr: Vec<f64> = (0..horizon_yr.ceil() as u32).map(f64::from).collect();
-        let mut time = horizon_yr;
-        while time <= 20.0 * horizon_yr {
-            times_yr.push(time);
-            time *= 1.1;
+        times_yr.push(horizon_yr);
+        let mut timeline = Self::at(growth, &times_yr)?;
+        let beyond: Vec<f64> = (1..32).map(|i| horizon_yr * 1.1_f64.powi(i)).collect();
+        let laws: Vec<_> = beyond.par_iter().map(|t| growth.by(*t).ok()).collect();
+        for (time, law) in beyond.into_iter().zip(laws).map_while(|(time, law)| Some((time, law?))) {
+            timeline.times_yr.push(time);
+            timeline.growth.push(law);
         }
-        Self::at(growth, &times_yr)
+        Ok(timeline)
     }
 
     /// At given times.

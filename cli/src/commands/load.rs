@@ -1,10 +1,14 @@
 //! Reading a model for a command: findings are said at once, in the asked form.
 use std::path::Path;
 
+use checker::diagnostic::Diagnostic;
+use checker::model::Model;
+
 use crate::args::DiagnosticsForm;
 use crate::diagnostics::show;
 use crate::exit::Exit;
 use crate::model_file::{self, LoadedModel};
+use crate::output::map::crs::{Grid, GridError};
 
 /// Reads and checks a model file; findings go to standard error.
 ///
@@ -22,6 +26,10 @@ pub(crate) fn load(path: &Path, form: DiagnosticsForm) -> Result<LoadedModel, Ex
                     return Err(Exit::ModelWrong);
                 }
             }
+            if let Err(fault) = map_grid(&loaded.model) {
+                show(&loaded.locate(&[fault]), form);
+                return Err(Exit::ModelWrong);
+            }
             Ok(loaded)
         }
         Err(failure) => {
@@ -29,4 +37,12 @@ pub(crate) fn load(path: &Path, form: DiagnosticsForm) -> Result<LoadedModel, Ex
             Err(if failure.unreadable { Exit::File } else { Exit::ModelWrong })
         }
     }
+}
+
+/// Whether the grid of `[location]` is known and the mark lies in it: said before any work.
+fn map_grid(model: &Model) -> Result<(), Diagnostic> {
+    let Some(location) = &model.location else { return Ok(()) };
+    let fault = |error: GridError| Diagnostic::error("location.crs", "location.crs", error.to_string());
+    let mark = [location.origin_easting_m, location.origin_northing_m];
+    Grid::new(&location.crs).and_then(|grid| grid.longitude_latitude_deg(mark)).map(|_| ()).map_err(fault)
 }

@@ -8,7 +8,8 @@ use crate::model_file::LoadedModel;
 use crate::output::figures::Figures;
 use crate::output::folder::{FolderError, Staging};
 use crate::output::svg::field::Quantity;
-use crate::output::{Provenance, csv, html, is_output_name, json, svg, vtk};
+use crate::output::map::{crs::Grid, features};
+use crate::output::{Provenance, csv, geojson, html, is_output_name, json, svg, vtk};
 use crate::progress::Reporter;
 
 /// Everything the files are made from.
@@ -45,6 +46,9 @@ pub(crate) enum WriteError {
     /// The report.
     #[error("cannot write `report.html`: {0}")]
     Template(#[from] html::TemplateError),
+    /// The map layer.
+    #[error("cannot write `map.geojson`: {0}")]
+    Map(#[from] geojson::MapError),
     /// The table.
     #[error("cannot write `depths.csv`: {0}")]
     Csv(#[from] ::csv::Error),
@@ -54,7 +58,7 @@ impl WriteError {
     /// Exit code of the run.
     pub(crate) fn exit(&self) -> Exit {
         match self {
-            Self::NotFinite(_) | Self::Field(_) => Exit::Analysis,
+            Self::NotFinite(_) | Self::Field(_) | Self::Map(_) => Exit::Analysis,
             Self::Folder(_) | Self::Csv(_) | Self::Template(_) => Exit::File,
         }
     }
@@ -75,6 +79,9 @@ pub(crate) fn all(job: &Job<'_>, mut staging: Staging, reporter: &Reporter) -> R
         staging.write(name, text.as_bytes())?;
     }
     if job.scope == Scope::Assess {
+        if let Some(map) = map(job)? {
+            staging.write("map.geojson", map.as_bytes())?;
+        }
         reporter.show("writing the report", 0, 1);
         staging.write("report.html", report(job, &figures)?.as_bytes())?;
     }
@@ -84,6 +91,14 @@ pub(crate) fn all(job: &Job<'_>, mut staging: Staging, reporter: &Reporter) -> R
     let shown = staging.target().display().to_string();
     let names = staging.commit()?;
     Ok(format!("wrote {} files to {shown}", names.len()))
+}
+
+/// The map layer, where the model says where on the map it stands.
+fn map(job: &Job<'_>) -> Result<Option<String>, geojson::MapError> {
+    let outcome = &job.results.outcome;
+    let Some(location) = &job.loaded.model.location else { return Ok(None) };
+    let grid = Grid::new(&location.crs)?;
+    geojson::write(&features(outcome, outcome.outlook.as_ref(), location), &grid, &outcome.program, job.provenance).map(Some)
 }
 
 /// The model file and what it names, under names that no output has.

@@ -32,11 +32,7 @@ pub(super) const NOT_YET_AVAILABLE: &[NotYet] = &[
     not_yet("situations[].sea_level_m", Form::NotAWord, "the sea on the face"),
     not_yet("situations[].above_table", Form::NotAWord, "suction above the water table"),
     not_yet("situations[].crack_water_above_tip_m", Form::Any, "water in cracks"),
-    not_yet("outlook", Form::Any, "the outlook over years"),
-    not_yet("assets", Form::Any, "assets on the cliff"),
-    not_yet("evidence", Form::Any, "evidence of falls and standing overhangs"),
     not_yet("remedies", Form::Any, "remedies"),
-    not_yet("location", Form::Any, "results on a map"),
 ];
 
 /// The entry for a key pattern, if its capability is not built yet.

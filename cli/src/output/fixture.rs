@@ -51,6 +51,7 @@ pub(crate) fn outcome() -> Outcome {
         depths,
         hangs_on: hangs_on(),
         below: BelowInfo { use_of_ground: Some("public beach".into()), keep_out_m: 45.0, basis: "1.5 x cliff height".into() },
+        outlook: None,
         warnings: vec![
             Note {
                 code: "k0.not-measured".into(),

@@ -1,5 +1,5 @@
 use super::{Cliff, Timeline, time_at_chance};
-use crate::model::Uncertain;
+use crate::model::{Storms, Uncertain};
 use crate::outlook::critical::{SampledDepths, SearchParams, critical_depths};
 use crate::outlook::demand_model::tests::fibre;
 use crate::outlook::growth::{Growth, GrowthParams};
@@ -104,4 +104,23 @@ fn a_rare_situation_waits_for_its_chance() {
     let cliff = Cliff { depths: &found, likelihood: None, today_m: 2.0 };
     let at = cliff.chances(&timeline)[20].unconditioned.probability;
     assert!((at - (1.0 - 0.99_f64.powi(20))).abs() < 1e-12, "{at}");
+}
+
+/// Frequent storms can be summed over the horizon but not over twenty of them: the timeline then ends sooner.
+#[test]
+fn frequent_storms_shorten_the_look_ahead() {
+    let storms = Some(Storms { per_yr: 3.0, jump_m: Uncertain::Lognormal { mean: 0.01, cov: 0.5 } });
+    let law = Growth::new(&GrowthParams {
+        mean_m_per_yr: 0.03,
+        uncertainty_cov: 0.3,
+        year_to_year_cov: 0.0,
+        storms,
+        sea_level_rise: None,
+        horizon_yr: 50.0,
+    })
+    .unwrap();
+    let timeline = Timeline::new(&law, 50.0).unwrap();
+    let last = timeline.times_yr[timeline.times_yr.len() - 1];
+    assert!(180.0 < last && last <= 200.0, "{last}");
+    assert!(Timeline::new(&law, 300.0).is_err());
 }
