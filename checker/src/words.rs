@@ -39,7 +39,8 @@ pub fn critical(critical: &CriticalDepth, inputs: &str) -> String {
     match (critical.depth_m, critical.check) {
         (Some(depth), Some(check)) => {
             let error = critical.error_m.map_or_else(String::new, |e| format!(" (numerical error {e:.2} m)"));
-            let lost = critical.ground_lost_m.map_or_else(String::new, |g| format!(", and about {g:.1} m of ground behind the brow goes with it"));
+            let lost =
+                critical.ground_lost_m.map_or_else(String::new, |g| format!(", and about {g:.1} m of ground behind the brow goes with it"));
             format!("with {inputs} inputs {check} goes over its limit at an undercut depth of {depth:.2} m{error}{lost}")
         }
         _ => format!("with {inputs} inputs no check goes over its limit down to {:.1} m; nothing is known beyond", critical.searched_to_m),

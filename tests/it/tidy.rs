@@ -54,7 +54,7 @@ fn files() -> Vec<(String, PathBuf)> {
 }
 
 fn sources() -> Vec<(String, String)> {
-    let rust = files().into_iter().filter(|(name, _)| name.ends_with(".rs"));
+    let rust = files().into_iter().filter(|(name, _)| Path::new(name).extension().is_some_and(|e| e == "rs"));
     rust.map(|(name, path)| (name, std::fs::read_to_string(path).unwrap())).collect()
 }
 
@@ -226,7 +226,7 @@ fn the_guide_for_developers_is_short_and_names_what_exists() {
 #[test]
 fn every_file_that_a_page_links_to_exists() {
     let mut wrong = Vec::new();
-    for (name, path) in files().into_iter().filter(|(name, _)| name.ends_with(".md")) {
+    for (name, path) in files().into_iter().filter(|(name, _)| Path::new(name).extension().is_some_and(|e| e == "md")) {
         let text = std::fs::read_to_string(&path).unwrap();
         for link in text.split("](").skip(1).filter_map(|rest| rest.split(')').next()) {
             let file = link.split('#').next().unwrap_or_default();

@@ -63,7 +63,8 @@ impl Run<'_> {
         }));
         info.warnings.extend(evidence.iter().filter(|e| e.section.is_none()).map(|_| Note {
             code: "outlook.evidence".into(),
-            message: "an overhang of the evidence differs in thickness from this section: a uniform overhang by closed form judges it".into(),
+            message:
+                "an overhang of the evidence differs in thickness from this section: a uniform overhang by closed form judges it".into(),
         }));
         Some(info)
     }
@@ -89,9 +90,11 @@ impl Run<'_> {
     fn ground_lost(&self, solved: &[Solved], demand: &DemandModel) -> GroundLost {
         let model: &Model = &self.prepared.model;
         let lost = |check: &str, situation: &str, s: &Solved| -> f64 {
-            let own = s.record.found.iter().find(|f| {
-                f.kind.id() == check && f.inputs == InputCase::BestEstimate && f.result.situation == situation
-            });
+            let own = s
+                .record
+                .found
+                .iter()
+                .find(|f| f.kind.id() == check && f.inputs == InputCase::BestEstimate && f.result.situation == situation);
             let line = own.and_then(|f| rupture(model, s, f, self.prepared.averaging_length_m));
             // Without a line of its own the ground above the back goes at least.
             let back = s.record.section.back_m().map_or(0.0, |back| back[0] - s.record.section.brow_m()[0]);

@@ -7,8 +7,8 @@ use crate::exit::Exit;
 use crate::model_file::LoadedModel;
 use crate::output::figures::Figures;
 use crate::output::folder::{FolderError, Staging};
-use crate::output::svg::field::Quantity;
 use crate::output::map::{crs::Grid, features};
+use crate::output::svg::field::Quantity;
 use crate::output::{Provenance, csv, geojson, html, is_output_name, json, svg, vtk};
 use crate::progress::Reporter;
 
