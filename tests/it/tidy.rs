@@ -255,7 +255,7 @@ fn every_equation_that_code_cites_exists() {
     let theory = text_of("docs/theory.md");
     let mut wrong = Vec::new();
     for (name, text) in sources() {
-        for cited in text.split("docs/theory.md eq. (").skip(1).filter_map(|rest| rest.split(')').next()) {
+        for cited in text.split(concat!("docs/theory.md", " eq. (")).skip(1).filter_map(|rest| rest.split(')').next()) {
             if !theory.contains(&format!("({cited})")) {
                 wrong.push(format!("{name}: ({cited})"));
             }

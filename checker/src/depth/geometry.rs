@@ -2,7 +2,7 @@
 use crate::analysis::samples::{Weighted, on_disc, on_segment};
 use crate::demand::CheckKind;
 use crate::model::Probe;
-use crate::section::{Feature, Place, PlaceKind, Section};
+use crate::section::{Feature, FreeBody, Place, PlaceKind, Section};
 
 /// Spacing of places on the surface, in averaging lengths.
 const PLACE_SPACING: f64 = 0.5;
@@ -41,6 +41,8 @@ pub struct TargetLine {
     pub to_m: [f64; 2],
     /// Layer and ends along the line of each piece, m.
     pub pieces: Vec<(usize, [f64; 2])>,
+    /// The body that it cuts off.
+    pub body: FreeBody,
 }
 
 /// All targets of one depth.
@@ -181,7 +183,7 @@ pub fn line_between(section: &Section, from_m: [f64; 2], to_m: [f64; 2]) -> Opti
             _ => pieces.push((layer, [pair[0], pair[1]])),
         }
     }
-    Some(TargetLine { from_m, to_m, pieces })
+    Some(TargetLine { from_m, to_m, pieces, body: section.free_body([from_m, to_m]) })
 }
 
 /// Distances along a line at which it crosses a contact.

@@ -204,7 +204,7 @@ fn thickness_shares(section: &Section) -> (f64, Vec<f64>) {
 
 /// Body, surcharges and normal stress of a rupture line.
 pub fn line_value(model: &Model, section: &Section, stress: &Stress, line: &TargetLine) -> LineValue {
-    let body = section.free_body([line.from_m, line.to_m]);
+    let body = &line.body;
     let length = (line.to_m[0] - line.from_m[0]).hypot(line.to_m[1] - line.from_m[1]);
     let e = [0, 1].map(|k| (line.to_m[k] - line.from_m[k]) / length);
     let n = [e[1], -e[0]];
@@ -223,8 +223,8 @@ pub fn line_value(model: &Model, section: &Section, stress: &Stress, line: &Targ
     LineValue {
         from_m: line.from_m,
         to_m: line.to_m,
-        areas_m2: body.areas_m2,
-        centroids_m: body.centroids_m,
+        areas_m2: body.areas_m2.clone(),
+        centroids_m: body.centroids_m.clone(),
         surcharges: model.surcharges.iter().map(|s| strip(s.x_m)).collect(),
         pieces: line.pieces.iter().map(piece).collect(),
         loose_m: Vec::new(),
