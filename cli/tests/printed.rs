@@ -69,9 +69,12 @@ fn same_word(a: &str, b: &str) -> bool {
 }
 
 fn same_line(a: &str, b: &str) -> bool {
-    // rules under a table's head are as wide as its widest entry
+    // rules under a table's head are as wide as its widest entry; an error may be printed as "< 0.001"
     let words = |line: &str| {
-        line.split_whitespace().filter(|w| !w.trim_matches('-').is_empty() || *w == "-").map(str::to_owned).collect::<Vec<_>>()
+        line.split_whitespace()
+            .filter(|w| *w != "<" && (!w.trim_matches('-').is_empty() || *w == "-"))
+            .map(str::to_owned)
+            .collect::<Vec<_>>()
     };
     let (a, b) = (words(a), words(b));
     a.len() == b.len() && a.iter().zip(&b).all(|(a, b)| same_word(a, b))
