@@ -63,15 +63,18 @@ fn same_word(a: &str, b: &str) -> bool {
     let places = |word: &str| word.split_once('.').map_or(0, |(_, behind)| behind.len());
     let (x, y) = (plain(a), plain(b));
     match (x.parse::<f64>(), y.parse::<f64>()) {
-        (Ok(u), Ok(v)) => (u - v).abs() <= 1.001 * 0.1_f64.powi(places(&x).min(places(&y)) as i32),
+        (Ok(u), Ok(v)) => (u - v).abs() <= 1.001 * 0.1_f64.powi(i32::try_from(places(&x).min(places(&y))).unwrap_or(0)),
         _ => a == b,
     }
 }
 
 fn same_line(a: &str, b: &str) -> bool {
-    // rules under a table's head are as wide as its widest entry
+    // rules under a table's head are as wide as its widest entry; an error may be printed as "< 0.001"
     let words = |line: &str| {
-        line.split_whitespace().filter(|w| !w.trim_matches('-').is_empty() || *w == "-").map(str::to_owned).collect::<Vec<_>>()
+        line.split_whitespace()
+            .filter(|w| *w != "<" && (!w.trim_matches('-').is_empty() || *w == "-"))
+            .map(str::to_owned)
+            .collect::<Vec<_>>()
     };
     let (a, b) = (words(a), words(b));
     a.len() == b.len() && a.iter().zip(&b).all(|(a, b)| same_word(a, b))
