@@ -56,8 +56,8 @@ impl Section {
         let ends = line.map(|end| surface.nearest(end).0);
         let later = |a: OnPath, b: OnPath| (b.segment, b.share) < (a.segment, a.share);
         let [from, to] = if later(ends[0], ends[1]) { [ends[1], ends[0]] } else { ends };
-        let part = surface.part(from, to);
-        let features = part.segments().map(|piece| self.feature_of(surface.nearest(piece.point(0.5)).0.segment)).collect();
+        let (part, origins) = surface.part(from, to);
+        let features = origins.into_iter().map(|piece| self.feature_of(piece)).collect();
         let (start, end) = (surface.point(from), surface.point(to));
         let chord = Segment { from_m: end, to_m: start, arc: None };
         let (points, _) = part.flattened(0.1);

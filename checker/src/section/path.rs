@@ -85,15 +85,17 @@ impl Path {
         Self { points_m: self.points_m[first..=last].to_vec(), arcs: self.arcs[first..last].to_vec() }
     }
 
-    /// The part between two places on it.
-    pub(crate) fn part(&self, from: OnPath, to: OnPath) -> Self {
-        let (mut part, mut i) = (Self::straight(vec![self.point(from)]), from.segment);
-        while i < to.segment {
-            part.push(self.points_m[i + 1], self.arcs[i]);
-            i += 1;
+    /// The part between two places on it without pieces of no length, and the piece from which each of its pieces comes.
+    pub(crate) fn part(&self, from: OnPath, to: OnPath) -> (Self, Vec<usize>) {
+        let (mut part, mut origins) = (Self::straight(vec![self.point(from)]), Vec::new());
+        for i in from.segment..=to.segment {
+            let end = if i < to.segment { self.points_m[i + 1] } else { self.point(to) };
+            if 0.0 < distance(part.points_m[part.points_m.len() - 1], end) {
+                part.push(end, self.arcs[i]);
+                origins.push(i);
+            }
         }
-        part.push(self.point(to), self.arcs[to.segment]);
-        part.without_repeats(0.0)
+        (part, origins)
     }
 
     /// The point at a place on it, m.
