@@ -1,6 +1,6 @@
 //! The model: everything a section's file says, in SI units, with defaults filled in.
 //!
-//! `ModelInput` (what the file says) and `Model` (what passed [`check`]) share these types: a field that a file may leave
+//! `ModelInput` (what the file says) and `Model` (what passed [`check()`]) share these types: a field that a file may leave
 //! out and that has a default is filled by the reader, which lists the key in [`Model::defaults_used`]; an `Option` stays
 //! `None` where leaving the key out has a meaning of its own.
 mod check;

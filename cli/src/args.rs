@@ -42,7 +42,7 @@ pub struct RunArgs {
     /// Model file
     #[arg(value_name = "MODEL")]
     pub model: PathBuf,
-    /// Folder for the results [default for assess and mesh: <model name>-results; check and deepen write files only if this is given]
+    /// Folder for the results [default for assess and mesh: MODEL-results; check and deepen write files only if this is given]
     #[arg(long, value_name = "DIR")]
     pub out: Option<PathBuf>,
     /// Print the results object on standard output and nothing else

@@ -58,7 +58,7 @@ pub fn fractile_factor(tests: u32) -> Result<f64, StrengthError> {
 /// Mean and deviation are taken as those of the tests. A number without scatter is its own fractile.
 ///
 /// # Errors
-/// As [`quantile`] and [`fractile_factor`].
+/// As [`quantile()`] and [`fractile_factor`].
 pub fn characteristic(number: Uncertain, tests: Option<u32>, end: End) -> Result<f64, StrengthError> {
     let sign = if end == End::Low { -1.0 } else { 1.0 };
     let Some(tests) = tests else {
