@@ -5,6 +5,7 @@
 pub mod explorer;
 pub mod front;
 pub mod inputs;
+pub mod outlook;
 pub mod results;
 pub mod table;
 
@@ -85,7 +86,9 @@ pub fn report(report: &Report<'_>) -> Result<String, TemplateError> {
         warnings => Value::from(Serde(&outcome.warnings)),
         defaults => outcome.model.defaults_used.clone(),
         recommendations => paragraphs(outcome.report.recommendations.as_deref()),
-        no_outlook => front::NO_OUTLOOK,
+        no_outlook => outlook::reasons(outcome),
+        outlook_sentences => outlook::calculated(outcome).map(outlook::sentences),
+        outlook_tables => outlook::calculated(outcome).map(outlook::tables),
         no_remedies => front::NO_REMEDIES,
         below => Value::from(Serde(&outcome.below)),
         surveyed_m => words::meters(outcome.surveyed.depth_m),

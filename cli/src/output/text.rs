@@ -240,6 +240,22 @@ fn answer(out: &mut String, outcome: &Outcome, parts: TextParts) {
             line(out, &format!("  {name}  {}{lost}", printable(&words::critical(depth))));
         }
     }
+    match &outcome.outlook {
+        None => {}
+        Some(outlook) if outlook.refused.is_empty() => {
+            for sentence in super::html::outlook::sentences(outlook) {
+                line(out, &printable(&sentence));
+            }
+            if let Some(setback_m) = outlook.setback_m {
+                line(out, &format!("Setback from {}: {setback_m:.1} m", outlook.setback_from.unwrap_or("today's brow")));
+            }
+        }
+        Some(outlook) => {
+            for refusal in &outlook.refused {
+                line(out, &format!("Outlook refused[{}]: {}", refusal.code, printable(&refusal.reason)));
+            }
+        }
+    }
     line(out, &format!("Below: keep out {:.0} m from the cliff foot ({})", outcome.below.keep_out_m, printable(&outcome.below.basis)));
 }
 

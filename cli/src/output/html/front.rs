@@ -3,10 +3,9 @@ use checker::model::{Headline, Model};
 use checker::outcome::{CheckResult, CriticalDepth, HangsOn, Outcome};
 use serde::Serialize;
 
+use super::outlook;
 use crate::output::{text, words};
 
-/// Why a part that asks for years and chances is missing.
-pub const NO_OUTLOOK: &str = "not calculated in this run, because this version computes no years, probabilities or setbacks";
 /// Why measures are missing.
 pub const NO_REMEDIES: &str = "not calculated in this run, because this version compares no measures";
 
@@ -21,19 +20,30 @@ pub struct BoxLine {
 
 /// The manager's box.
 pub fn manager_box(outcome: &Outcome) -> Vec<BoxLine> {
-    let above = match outcome.critical_depth.as_ref().and_then(|critical| critical.cautious.ground_lost_m) {
-        Some(lost_m) => format!(
-            "Distance to keep behind today's edge, and until when: {NO_OUTLOOK}. The break itself takes about {lost_m:.1} m of ground behind \
-             the edge; a setback must be wider than that."
+    let break_m = outcome.critical_depth.as_ref().and_then(|critical| critical.cautious.ground_lost_m);
+    let takes = break_m.map_or_else(String::new, |lost_m| {
+        format!(" The break itself takes about {lost_m:.1} m of ground behind the edge; a setback must be wider than that.")
+    });
+    let outlook = outlook::calculated(outcome);
+    let above = match outlook.and_then(|outlook| outlook.setback_m.zip(outlook.horizon_years)) {
+        Some((setback_m, years)) => {
+            format!("Keep behind {setback_m:.0} m from today's edge for the coming {} years.{takes}", words::plain(years))
+        }
+        None => format!(
+            "Distance to keep behind today's edge, and until when: {}.{takes}",
+            outlook::reason_for(outcome, "no chance is accepted by an owner")
         ),
-        None => format!("Distance to keep behind today's edge, and until when: {NO_OUTLOOK}."),
     };
     let below = &outcome.below;
     let using = below.use_of_ground.as_ref().map_or_else(String::new, |used| format!(" The ground below is used as {used}."));
-    let again = outcome.report.valid_until.as_ref().map_or_else(
-        || format!("Date of the next survey: {NO_OUTLOOK}. Until then: after every winter, and after every storm or fall."),
-        |date| format!("At the latest by {date}, when this report ends; and after every storm or fall. Date from the rate: {NO_OUTLOOK}."),
-    );
+    let ends = outcome.report.valid_until.as_ref().map_or_else(String::new, |date| format!(" This report ends on {date}."));
+    let again = match outlook.and_then(|outlook| outlook.next_survey_by.as_ref()) {
+        Some(date) => format!("By {date}, and after every storm or fall.{ends}"),
+        None => format!(
+            "After every winter, and after every storm or fall.{ends} Date from the rate: {}.",
+            outlook::reason_for(outcome, "no date was found")
+        ),
+    };
     vec![
         BoxLine { what: "Above", answer: above },
         BoxLine { what: "Below", answer: format!("Keep out {:.0} m from the cliff foot ({}).{using}", below.keep_out_m, below.basis) },
