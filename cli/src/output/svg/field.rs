@@ -267,8 +267,8 @@ fn legend(svg: &mut Svg, scale: &Scale, frame: &Frame) -> f64 {
             let is_zero = scale.quantity == Quantity::MajorStress && level.abs() < 1e-12;
             if is_zero {
                 svg.line([[x - 4.0, y], [x + BOX[0] + 5.0, y]], "zero");
-                svg.text([x + BOX[0] + 40.0, y - 8.0], Anchor::Start, "label strong", "tension");
-                svg.text([x + BOX[0] + 40.0, y + 18.0], Anchor::Start, "label strong", "compression");
+                svg.text([x + BOX[0] + 52.0, y - 6.0], Anchor::Start, "label strong", "tension");
+                svg.text([x + BOX[0] + 52.0, y + 13.0], Anchor::Start, "label strong", "compression");
             }
             if scale.quantity == Quantity::Utilization && (level - 1.0).abs() < 1e-12 {
                 svg.line([[x - 4.0, y], [x + BOX[0] + 5.0, y]], "limit");
