@@ -9,7 +9,7 @@ mod place;
 mod states;
 
 pub use evaluate::{Evaluation, Found, RockEnds, evaluate, place_utilization, rock_ends};
-pub use line::{LineValue, Piece, SectionForces};
+pub use line::{LineValue, LineWater, Piece, SectionForces};
 pub use place::{Pair, PlaceValue};
 pub use states::{InputCase, K0Case, k0_cases};
 

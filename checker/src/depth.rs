@@ -2,6 +2,7 @@
 mod adapt;
 mod fields;
 mod geometry;
+mod line_water;
 mod record;
 
 pub use adapt::Budget;

@@ -1,9 +1,10 @@
 //! From a model to what all depths share: site, load cases, strengths, averaging length.
 use crate::analysis::load_cases::CaseSet;
+use crate::analysis::water::WaterField;
 use crate::demand::{K0Case, RockEnds, k0_cases, rock_ends};
 use crate::depth::{Budget, Context};
 use crate::diagnostic::Diagnostic;
-use crate::model::{Averaging, Carries, Model};
+use crate::model::{Averaging, Carries, Groundwater, Model, SeaLevel};
 use crate::section::Site;
 use crate::strength::{Inputs, RockCapacity, Strength, design, mean};
 
@@ -123,8 +124,34 @@ pub fn prepare(model: &Model) -> Result<Prepared<'_>, Vec<Diagnostic>> {
         return Err(faults);
     }
     notes.dedup();
+    warnings.extend(water_warnings(&model, &site));
     let (cases, k0_cases) = (CaseSet::new(&model), k0_cases(&model));
     Ok(Prepared { cases, best, cautious, ends, k0_cases, averaging_length_m, strength_notes: notes, warnings, site, model })
+}
+
+/// Water tables that hang above a free face, and seas without a table, one warning a situation.
+fn water_warnings(model: &Model, site: &Site) -> Vec<Diagnostic> {
+    let sections = [site.surveyed_depth_m(), site.search_to_depth_m()].map(|depth| site.at_depth(depth));
+    let mut warnings = Vec::new();
+    for (s, situation) in model.situations.iter().enumerate() {
+        let drop_m = |section: &crate::section::Section| WaterField::new(section, situation).map_or(0.0, |field| field.drawdown_m);
+        let drawdown_m = sections.iter().flatten().map(drop_m).fold(0.0, f64::max);
+        if 0.0 < drawdown_m {
+            let message = format!(
+                "the water table of `{}` lies up to {drawdown_m:.1} m above a free face: it is drawn down to the face over a distance equal to \
+                 the head difference",
+                situation.name
+            );
+            let hint = "give the table as it meets the face; a table that hangs above a free face gives false effective tension";
+            warnings.push(Diagnostic::warning("water.drawdown", format!("situations[{s}].groundwater"), message).hint(hint));
+        }
+        if matches!(situation.sea_level, SeaLevel::Level(_)) && !matches!(situation.groundwater, Some(Groundwater::Table(_))) {
+            let message =
+                format!("`{}` has the sea on the face and no water table: the ground below sea level is taken as full", situation.name);
+            warnings.push(Diagnostic::warning("water.sea-without-table", format!("situations[{s}].sea_level_m"), message));
+        }
+    }
+    warnings
 }
 
 /// A layer softer than 100 MPa without a tensile strength only loads, with a note.

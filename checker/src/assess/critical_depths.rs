@@ -90,7 +90,7 @@ pub(super) fn rupture(model: &Model, solved: &Solved, found: &Found, averaging_l
         .lines
         .iter()
         .map(|line| {
-            let forces = line.forces(model, &found.state);
+            let forces = line.effective_forces(model, &found.state);
             let length = line.length_m();
             forces.axial_n_per_m / length + 6.0 * forces.moment_n / (length * length)
         })

@@ -209,7 +209,7 @@ fn worst_line(e: &Evaluation<'_>, kind: CheckKind, state: &State, coefficients: 
     let limits = limits(e, inputs);
     let mut worst: Option<Worst> = None;
     for (index, line) in e.lines.iter().enumerate() {
-        let forces = line.forces(e.model, state);
+        let forces = line.effective_forces(e.model, state);
         let Some((along, layer, pair)) = line_pair(e, kind, line, (&forces, coefficients), limits) else { continue };
         if worst.as_ref().is_none_or(|w| rank(&w.pair) < rank(&pair)) {
             let t = along / line.length_m();
@@ -298,7 +298,7 @@ fn place_error(e: &Evaluation<'_>, kind: CheckKind, place: &PlaceValue, coeffici
 
 fn section_shear_error(e: &Evaluation<'_>, worst: &Worst, state: &State, coefficients: &[f64], inputs: InputCase) -> f64 {
     let line = &e.lines[worst.index];
-    let forces = line.forces(e.model, state);
+    let forces = line.effective_forces(e.model, state);
     let [fine, coarse] =
         [line.clone(), line.on_coarse_mesh()].map(|l| l.shear(e.model, &forces, coefficients, limits(e, inputs)).utilization());
     fine.zip(coarse).map_or(0.0, |(a, b)| (a - b).abs())

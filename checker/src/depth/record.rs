@@ -7,6 +7,7 @@ use fem_core::tensor::{major, minor};
 use super::adapt::{Budget, first_sizes, make_mesh, next_sizes, same_sizes};
 use super::fields::mean_state;
 use super::geometry::{Geometry, TargetLine};
+use super::line_water::{line_water, thrust};
 use crate::analysis::load_cases::{CaseSet, superpose};
 use crate::analysis::samples::on_segment;
 use crate::analysis::stress::SolveQuality;
@@ -228,6 +229,8 @@ pub fn line_value(model: &Model, section: &Section, stress: &Stress, line: &Targ
         surcharges: model.surcharges.iter().map(|s| strip(s.x_m)).collect(),
         pieces: line.pieces.iter().map(piece).collect(),
         loose_m: Vec::new(),
+        waters: stress.columns.fields.iter().map(|f| line_water(section, f, line, body, stress.columns.has_saturated())).collect(),
+        water_of_situation: stress.cases.water_of_situation.clone(),
     }
 }
 
@@ -256,6 +259,9 @@ pub fn rupture_value(model: &Model, section: &Section, stress: &Stress, line: &T
         let width = (surcharge.x_m[1].min(entry[0]) - from).max(0.0);
         let middle = from + 0.5 * width;
         *strip = (width, [middle, section.ground_level_m(middle)]);
+    }
+    for (water, field) in value.waters.iter_mut().zip(&stress.columns.fields) {
+        water.thrust = thrust(field, [line.from_m, entry]);
     }
     let area = 0.5 * (line.to_m[0] - entry[0]) * (ground[1] - entry[1]);
     let centroid = [0, 1].map(|k| (entry[k] + ground[k] + line.to_m[k]) / 3.0);

@@ -222,7 +222,12 @@ impl Maker<'_> {
         let of = |case: &LoadCase| match *case {
             LoadCase::Weight { layer } | LoadCase::Seaward { layer } | LoadCase::Upward { layer } => Coefficient::Input(self.gamma(layer)),
             LoadCase::Horizontal { layer, above } => Coefficient::Product(k0(layer), self.gamma(above)),
-            LoadCase::Surcharge { .. } | LoadCase::SurchargeSeaward { .. } => Coefficient::One,
+            LoadCase::Saturated { layer, .. } | LoadCase::SaturatedSeaward { layer, .. } | LoadCase::SaturatedUpward { layer, .. } => {
+                Coefficient::Input(self.gamma(layer))
+            }
+            LoadCase::WaterHorizontal { layer, .. } => Coefficient::Input(k0(layer)),
+            LoadCase::SaturatedHorizontal { layer, above, .. } => Coefficient::Product(k0(layer), self.gamma(above)),
+            LoadCase::Surcharge { .. } | LoadCase::SurchargeSeaward { .. } | LoadCase::Water { .. } => Coefficient::One,
         };
         self.cases.cases.iter().map(of).collect()
     }
@@ -257,11 +262,11 @@ impl Maker<'_> {
     }
 
     /// Section forces `[N, V, M]` of a line for each load case: forces are linear in the unit weights, so those of one rock stand
-    /// with the weight of the first layer of that rock, and those of the surcharges with the first constant case.
+    /// with the weight of the first layer of that rock, and those of the surcharges and of the water with the first constant case.
     fn line_cases(&self, line: &LineValue, situation: usize) -> Vec<[f64; 3]> {
         let n_rocks = self.model.rocks.len();
         let forces = |weights: &[f64]| {
-            let f = line.forces(self.model, &self.state(situation, weights));
+            let f = line.effective_forces(self.model, &self.state(situation, weights));
             [f.axial_n_per_m, f.shear_n_per_m, f.moment_n]
         };
         let constant = forces(&vec![0.0; n_rocks]);
@@ -276,7 +281,7 @@ impl Maker<'_> {
                 let with = forces(&one);
                 [0, 1, 2].map(|k| with[k] - constant[k])
             }
-            LoadCase::Surcharge { .. } => constant_left.take().unwrap_or_default(),
+            LoadCase::Surcharge { .. } | LoadCase::Water { .. } => constant_left.take().unwrap_or_default(),
             _ => [0.0; 3],
         };
         self.cases.cases.iter().map(of).collect()
