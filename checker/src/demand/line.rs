@@ -21,6 +21,8 @@ pub struct LineValue {
     pub pieces: Vec<Piece>,
     /// Layers that only load above the upper end, with their thickness there, m: they break off upright and lie back.
     pub loose_m: Vec<(usize, f64)>,
+    /// Joint set whose path it is; `None` = a rupture line.
+    pub set: Option<usize>,
     /// What each different water does.
     pub waters: Vec<LineWater>,
     /// Water of each situation; a missing entry is dry.
@@ -185,21 +187,27 @@ impl LineValue {
         worst
     }
 
+    /// Effective normal stress of every piece, tension positive, Pa: that of the field, shifted evenly to the sum of equilibrium.
+    pub(super) fn normal_stresses_pa(&self, forces: &SectionForces, coefficients: &[f64]) -> Vec<f64> {
+        let field = |piece: &Piece| coefficients.iter().zip(&piece.normal_pa).map(|(c, s)| c * s).sum::<f64>();
+        let stresses: Vec<f64> = self.pieces.iter().map(field).collect();
+        let total: f64 = self.pieces.iter().zip(&stresses).map(|(p, s)| s * (p.along_m[1] - p.along_m[0])).sum();
+        let correction = (forces.axial_n_per_m - total) / self.length_m();
+        stresses.iter().map(|s| s + correction).collect()
+    }
+
     /// Mean shear over the line against the mean of `c' + sigma' tan phi'`.
     ///
     /// The normal force is that of equilibrium; the stress field only splits it among the layers:
     /// `N_i = N_i,field + (N - sum N_field) l_i / l`. A layer without strength, or pulled beyond its apex, adds nothing.
     pub fn shear(&self, model: &Model, forces: &SectionForces, coefficients: &[f64], limits: &[Option<Strength>]) -> Pair {
         let length = self.length_m();
-        let field = |piece: &Piece| coefficients.iter().zip(&piece.normal_pa).map(|(c, s)| c * s).sum::<f64>();
-        let total: f64 = self.pieces.iter().map(|p| field(p) * (p.along_m[1] - p.along_m[0])).sum();
-        let correction = (forces.axial_n_per_m - total) / length;
-        let strength = |piece: &Piece| {
+        let strength = |(piece, normal): (&Piece, &f64)| {
             let limit = limits[model.layers[piece.layer].rock]?;
-            let compression = -(field(piece) + correction);
-            Some(limit.shear_strength_pa(compression) * (piece.along_m[1] - piece.along_m[0]))
+            Some(limit.shear_strength_pa(-normal) * (piece.along_m[1] - piece.along_m[0]))
         };
-        let capacity: f64 = self.pieces.iter().filter_map(strength).sum();
+        let normals = self.normal_stresses_pa(forces, coefficients);
+        let capacity: f64 = self.pieces.iter().zip(&normals).filter_map(strength).sum();
         Pair { demand_pa: forces.shear_n_per_m / length, capacity_pa: capacity / length, beyond_apex: false }
     }
 }

@@ -177,6 +177,8 @@ pub fn demand_model(
                 CheckKind::CliffTopTension | CheckKind::RoofTension => {
                     entries.iter().enumerate().for_each(|(e, r)| push(Law::Tension { strength: e }, Some(*r)));
                 }
+                // paths of joint sets are not sampled
+                CheckKind::JointOpening | CheckKind::JointSlip => {}
             }
         }
     }
@@ -290,7 +292,7 @@ impl Maker<'_> {
     /// Fibre stresses at both ends of the pieces of every line in one rock, by the stiffness-weighted section (eq. (7.6)).
     fn fibres(&self, at: &SectionValues, situation: usize, rock: usize) -> Places {
         let mut places = Places::default();
-        for line in at.lines {
+        for line in at.lines.iter().filter(|l| l.set.is_none()) {
             let stiffness = |layer: usize| match self.model.layers[layer].carries {
                 Carries::LoadAndTension => {
                     let rock = &self.model.rocks[self.rock_of(layer)];
@@ -327,7 +329,7 @@ impl Maker<'_> {
         let mut places = Places::default();
         let scales = self.scales(situation);
         let layers: Vec<usize> = self.holding_layers().map(|l| l.0).collect();
-        for line in at.lines {
+        for line in at.lines.iter().filter(|l| l.set.is_none()) {
             let length = line.length_m();
             let cases = self.line_cases(line, situation);
             let field = |layer: usize, k: usize| -> f64 {

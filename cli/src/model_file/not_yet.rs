@@ -15,7 +15,6 @@ const fn not_yet(key: &'static str, what: &'static str) -> NotYet {
 
 /// The list; an entry is deleted when its capability is built.
 pub(super) const NOT_YET_AVAILABLE: &[NotYet] = &[
-    not_yet("joint_sets", "sets of planes of weakness"),
     not_yet("cracks", "seen cracks"),
     not_yet("situations[].crack_water_above_tip_m", "water in cracks"),
     not_yet("remedies", "remedies"),

@@ -44,6 +44,7 @@ fn line(n_cases: usize) -> LineValue {
         surcharges: vec![(2.0, [2.0, 8.0])],
         pieces: vec![piece(2, 0.0, 3.0), piece(1, 3.0, 6.0), piece(0, 6.0, 65.0_f64.sqrt())],
         loose_m: Vec::new(),
+        set: None,
         waters: vec![],
         water_of_situation: vec![],
     }
