@@ -7,9 +7,11 @@ use std::path::Path;
 
 use brinkline::model_file;
 use checker::analysis::samples::on_segment;
+use checker::analysis::water::WaterField;
 use checker::assess::{self, Scope, Unwatched};
 use checker::model::{AboveTable, Groundwater, SeaLevel, Uncertain};
 use fem_core::assembly::{body_force, initial_stress_split};
+use fem_core::mesh::Mesh;
 use fem_core::tensor::{major, minor};
 use serde_json::Value;
 
@@ -17,6 +19,16 @@ use crate::reference_cases::{TARGET, model_text, resultants};
 
 fn pair(value: &Value) -> [f64; 2] {
     [value[0].as_f64().unwrap(), value[1].as_f64().unwrap()]
+}
+
+/// Loads of the reference: total unit weight everywhere and pore pressure, nothing in situ.
+fn gravity_and_pore_pressure(mesh: &Mesh, water: &WaterField) -> Vec<f64> {
+    let kinks = |t: usize| water.kinks(&mesh.triangles[t].map(|n| mesh.points_m[n as usize]));
+    let pressure = |_: usize, p: [f64; 2]| [-water.pressure_pa(p), -water.pressure_pa(p), 0.0];
+    let mut load = body_force(mesh, &|_, _| [0.0, -24e3]);
+    let pore = initial_stress_split(mesh, &pressure, &kinks, 0..mesh.triangles.len() as u32);
+    load.iter_mut().zip(pore).for_each(|(sum, add)| *sum += add);
+    load
 }
 
 #[test]
@@ -29,18 +41,7 @@ fn case8_low() {
     let (record, stress) = checker::depth::record(&prepared.context(), depth_m, None).unwrap();
     let (mesh, water) = (&stress.mesh, &stress.columns.fields[0]);
     assert!(water.drawdown_m <= 0.0, "the table runs below every free face: {}", water.drawdown_m);
-    let kinks = |t: usize| water.kinks(&mesh.triangles[t].map(|n| mesh.points_m[n as usize]));
-    let mut load = body_force(mesh, &|_, _| [0.0, -24e3]);
-    let pore = initial_stress_split(
-        mesh,
-        &|_, p| {
-            let u = water.pressure_pa(p);
-            [-u, -u, 0.0]
-        },
-        &kinks,
-        0..mesh.triangles.len() as u32,
-    );
-    load.iter_mut().zip(pore).for_each(|(sum, add)| *sum += add);
+    let load = gravity_and_pore_pressure(mesh, water);
     let displacements = stress.solve_loads(&[load]).unwrap().remove(0);
     let recovered = stress.recover(&displacements);
     let at = |p: [f64; 2]| {

@@ -222,13 +222,16 @@ impl Maker<'_> {
     fn coefficients(&self) -> Vec<Coefficient> {
         let k0 = |layer: usize| self.inputs.k0[self.rock_of(layer)].expect("rocks of layers are inputs");
         let of = |case: &LoadCase| match *case {
-            LoadCase::Weight { layer } | LoadCase::Seaward { layer } | LoadCase::Upward { layer } => Coefficient::Input(self.gamma(layer)),
-            LoadCase::Horizontal { layer, above } => Coefficient::Product(k0(layer), self.gamma(above)),
-            LoadCase::Saturated { layer, .. } | LoadCase::SaturatedSeaward { layer, .. } | LoadCase::SaturatedUpward { layer, .. } => {
-                Coefficient::Input(self.gamma(layer))
+            LoadCase::Weight { layer }
+            | LoadCase::Seaward { layer }
+            | LoadCase::Upward { layer }
+            | LoadCase::Saturated { layer, .. }
+            | LoadCase::SaturatedSeaward { layer, .. }
+            | LoadCase::SaturatedUpward { layer, .. } => Coefficient::Input(self.gamma(layer)),
+            LoadCase::Horizontal { layer, above } | LoadCase::SaturatedHorizontal { layer, above, .. } => {
+                Coefficient::Product(k0(layer), self.gamma(above))
             }
             LoadCase::WaterHorizontal { layer, .. } => Coefficient::Input(k0(layer)),
-            LoadCase::SaturatedHorizontal { layer, above, .. } => Coefficient::Product(k0(layer), self.gamma(above)),
             LoadCase::Surcharge { .. } | LoadCase::SurchargeSeaward { .. } | LoadCase::Water { .. } => Coefficient::One,
         };
         self.cases.cases.iter().map(of).collect()
