@@ -1,9 +1,11 @@
 //! Stress of one section by unit load cases: `Section` + mesh -> tensors at places and lines.
+pub mod columns;
 pub mod in_situ;
 pub mod load_cases;
 pub mod loads;
 pub mod samples;
 pub mod stress;
+pub mod water;
 
 pub use stress::Stress;
 

@@ -4,12 +4,13 @@
 //! section quantity from equilibrium. Tensors are stored per unit load case, so that any weights and in-situ stresses are
 //! an exact superposition.
 mod evaluate;
+mod joint;
 mod line;
 mod place;
 mod states;
 
 pub use evaluate::{Evaluation, Found, RockEnds, evaluate, place_utilization, rock_ends};
-pub use line::{LineValue, Piece, SectionForces};
+pub use line::{LineValue, LineWater, Piece, SectionForces};
 pub use place::{Pair, PlaceValue};
 pub use states::{InputCase, K0Case, k0_cases};
 
@@ -26,15 +27,32 @@ pub enum CheckKind {
     SectionBending,
     /// Mean shear on a rupture line from equilibrium.
     SectionShear,
+    /// Length of a joint path that tension opens.
+    JointOpening,
+    /// Mean shear on a joint path.
+    JointSlip,
 }
 
 impl CheckKind {
     /// All checks, in the order of the results.
-    pub const ALL: [Self; 5] = [Self::CliffTopTension, Self::RoofTension, Self::LocalShear, Self::SectionBending, Self::SectionShear];
+    pub const ALL: [Self; 7] = [
+        Self::CliffTopTension,
+        Self::RoofTension,
+        Self::LocalShear,
+        Self::SectionBending,
+        Self::SectionShear,
+        Self::JointOpening,
+        Self::JointSlip,
+    ];
 
     /// Whether the check is taken at a place of the stress field, not on a line.
     pub fn is_local(self) -> bool {
         matches!(self, Self::CliffTopTension | Self::RoofTension | Self::LocalShear)
+    }
+
+    /// Whether the check is taken on the paths of joint sets.
+    pub fn is_of_joints(self) -> bool {
+        matches!(self, Self::JointOpening | Self::JointSlip)
     }
 
     /// Published id.
@@ -45,6 +63,8 @@ impl CheckKind {
             Self::LocalShear => "local shear",
             Self::SectionBending => "section bending",
             Self::SectionShear => "section shear",
+            Self::JointOpening => "joint opening",
+            Self::JointSlip => "joint slip",
         }
     }
 }

@@ -295,7 +295,7 @@ pub struct StressKpa {
     pub minor: f64,
 }
 
-/// Resultants on a cut (best estimate; effective stress, total where dry).
+/// Resultants of the total stress on a cut (best estimate).
 #[derive(Debug, Clone, PartialEq, Serialize)]
 pub struct CutResult {
     /// Name.

@@ -3,7 +3,7 @@
 //! The line belongs to the governing check: for tension under the ground it follows the direction across the major principal
 //! stress from the governing place down to the hollow; for the others it is the worst section line that passes within one
 //! averaging length of the place.
-use crate::demand::{CheckKind, Found, LineValue};
+use crate::demand::{Found, LineValue};
 use crate::model::Model;
 
 /// Share of the worst line's bending demand above which a line counts for the range of ground lost.
@@ -33,7 +33,7 @@ fn distance_m(point: [f64; 2], line: &LineValue) -> f64 {
 /// Index of the line that the block breaks on, for checks other than tension under the ground: the greatest bending demand among
 /// the lines within one averaging length of the place, or else the nearest line.
 pub fn nearest_worst_line(found: &Found, lines: &[LineValue], bending_pa: &[f64], averaging_length_m: f64) -> Option<usize> {
-    if matches!(found.kind, CheckKind::SectionBending | CheckKind::SectionShear) {
+    if !found.kind.is_local() {
         return Some(found.index);
     }
     let distances: Vec<f64> = lines.iter().map(|l| distance_m(found.result.at, l)).collect();

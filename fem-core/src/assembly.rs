@@ -9,10 +9,15 @@ use crate::supports::Supports;
 
 mod forces;
 mod loads;
+mod split;
 
 pub use forces::{internal_forces, internal_forces_of};
-pub use loads::{body_force, body_force_of, edge_pressure, edge_traction, initial_stress, initial_stress_of, pore_pressure};
+pub use loads::{
+    body_force, body_force_of, body_force_split, edge_pressure, edge_traction, initial_stress, initial_stress_of, initial_stress_split,
+    pore_pressure,
+};
 pub(crate) use loads::{pieces as edge_pieces, side_point, side_slope, walk_edge};
+pub use split::{KinkLine, KinksOf, SMOOTH};
 
 /// "This unknown is prescribed" in [`DofMap::free_of_dof`].
 pub const PRESCRIBED: u32 = u32::MAX;

@@ -3,4 +3,5 @@
 mod diagnostics;
 mod main_job;
 mod reference_cases;
+mod reference_water;
 mod tidy;

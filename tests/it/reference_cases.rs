@@ -12,7 +12,7 @@ use checker::outcome::DepthResult;
 use serde_json::Value;
 
 /// The model file of a reference case: a plain vertical face with a round slot of the case's depth.
-fn model_text(case: &Value, target_error: f64) -> String {
+pub(super) fn model_text(case: &Value, target_error: f64) -> String {
     let spec = &case["spec"];
     let (height, slot) = (spec["H"].as_f64().unwrap(), spec["slot_height"].as_f64().unwrap());
     let (depth, domain) = (spec["depth"].as_f64().unwrap(), &spec["domain"]);
@@ -58,7 +58,8 @@ fn model_text(case: &Value, target_error: f64) -> String {
 /// Surcharge and ground motion of a case.
 fn situation(t: &mut String, spec: &Value) {
     let kh = spec["kh"].as_f64().unwrap_or(0.0);
-    writeln!(t, "[[situations]]\nname = \"the case\"\ngroundwater = \"dry, observed\"").unwrap();
+    let table = spec.get("water_table").map_or("\"dry, observed\"".to_owned(), Value::to_string);
+    writeln!(t, "[[situations]]\nname = \"the case\"\ngroundwater = {table}").unwrap();
     if 0.0 < kh {
         writeln!(t, "inertia_seaward = {kh}").unwrap();
     }
@@ -129,7 +130,7 @@ fn check(name: &str) {
 
 /// Section resultants at the back against exact statics. Tolerance 1e-6: the slot's circle is meshed by parabolas.
 #[track_caller]
-fn resultants(name: &str, statics: &Value, at: &DepthResult) {
+pub(super) fn resultants(name: &str, statics: &Value, at: &DepthResult) {
     let cut = &at.cuts[0];
     let size = statics["V"].as_f64().unwrap();
     let length = statics["h"].as_f64().unwrap();
@@ -142,7 +143,7 @@ fn resultants(name: &str, statics: &Value, at: &DepthResult) {
 }
 
 /// Target of utilizations and probes in these runs.
-const TARGET: f64 = 0.001;
+pub(super) const TARGET: f64 = 0.001;
 
 macro_rules! cases {
     ($($name:ident),*) => { $(#[test] fn $name() { check(concat!(stringify!($name), ".json")); })* };

@@ -10,7 +10,7 @@ use fem_core::stress::raw_stress_pa;
 use fem_core::system::{Problem, System};
 
 use super::AnalysisError;
-use super::in_situ::in_situ_pa;
+use super::columns::Columns;
 use super::load_cases::CaseSet;
 use super::loads::{supports, unit_loads};
 use super::samples::Weighted;
@@ -45,6 +45,8 @@ pub struct Stress {
     pub displacements_m: Vec<Vec<f64>>,
     /// Node loads of each load case, N/m, shape `[n_cases][2 * n_nodes]`.
     pub loads_n_per_m: Vec<Vec<f64>>,
+    /// Waters of the section.
+    pub columns: Columns,
     /// Quality.
     pub quality: SolveQuality,
     /// Recovered `D eps(u)` in Pa, node by node, three components a load case: `[node][case][3]`.
@@ -84,7 +86,8 @@ impl Stress {
             Elastic::new(rock.youngs_modulus_pa, rock.poissons_ratio)
         };
         let materials = (0..section.n_layers()).map(elastic).collect::<Result<Vec<_>, _>>()?;
-        let loads = unit_loads(model, section, &mesh, cases);
+        let columns = Columns::new(model, section, cases);
+        let loads = unit_loads(model, section, &mesh, cases, &columns);
         let supports = supports(&mesh);
         let system = Problem { mesh: &mesh, materials: &materials, supports: &supports }.factor()?;
         let solutions = system.solve(&loads)?;
@@ -113,6 +116,7 @@ impl Stress {
             cases: cases.clone(),
             displacements_m,
             loads_n_per_m: loads,
+            columns,
             quality,
             recovered_pa,
             recovery,
@@ -161,9 +165,9 @@ impl Stress {
             }
             weight += at.weight;
         }
-        let overburden = mean_overburden(section, samples);
+        let column = self.columns.mean(section, samples);
         let tensor = |(c, &case): (usize, &_)| {
-            let initial = in_situ_pa(case, layer, &overburden);
+            let initial = column.in_situ_pa(case, layer);
             [0, 1, 2].map(|k| sum[3 * c + k] / weight + initial[k])
         };
         self.cases.cases.iter().enumerate().map(tensor).collect()
@@ -173,9 +177,9 @@ impl Stress {
     pub fn raw_mean_pa(&self, section: &Section, samples: &[Weighted], layer: usize) -> Vec<[f64; 3]> {
         let located = self.place(samples, layer);
         let weight: f64 = located.iter().map(|at| at.weight).sum();
-        let overburden = mean_overburden(section, samples);
+        let column = self.columns.mean(section, samples);
         let tensor = |(c, &case): (usize, &_)| {
-            let mut sum = in_situ_pa(case, layer, &overburden);
+            let mut sum = column.in_situ_pa(case, layer);
             for at in &located {
                 let stress = raw_stress_pa(&self.mesh, &self.materials, &self.displacements_m[c], (at.element as usize, at.xi));
                 for k in 0..3 {
@@ -250,18 +254,4 @@ impl Stress {
     pub fn at_pa(&self, section: &Section, coefficients: &[f64], point_m: [f64; 2], layer: usize) -> [f64; 3] {
         super::load_cases::superpose(coefficients, &self.mean_pa(section, &[(point_m, 1.0)], layer))
     }
-}
-
-/// Mean thickness of each layer above the samples, m.
-fn mean_overburden(section: &Section, samples: &[Weighted]) -> Vec<f64> {
-    let total: f64 = samples.iter().map(|s| s.1).sum();
-    let mut mean = vec![0.0; section.n_layers()];
-    let mut one = vec![0.0; section.n_layers()];
-    for &(p, weight) in samples {
-        section.overburden_into(p, &mut one);
-        for (m, t) in mean.iter_mut().zip(&one) {
-            *m += weight / total * t;
-        }
-    }
-    mean
 }

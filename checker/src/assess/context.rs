@@ -1,11 +1,13 @@
 //! From a model to what all depths share: site, load cases, strengths, averaging length.
 use crate::analysis::load_cases::CaseSet;
+use crate::analysis::water::WaterField;
 use crate::demand::{K0Case, RockEnds, k0_cases, rock_ends};
 use crate::depth::{Budget, Context};
 use crate::diagnostic::Diagnostic;
-use crate::model::{Averaging, Carries, Model};
+use crate::model::{Averaging, Carries, Groundwater, Model, SeaLevel};
 use crate::section::Site;
-use crate::strength::{Inputs, RockCapacity, Strength, design, mean};
+use crate::strength::joint_set::JointCapacity;
+use crate::strength::{Inputs, RockCapacity, Strength, design, mean, strength_factors};
 
 /// Longest averaging length that is chosen by the tool, m.
 const LONGEST_AVERAGING_M: f64 = 1.0;
@@ -13,6 +15,8 @@ const LONGEST_AVERAGING_M: f64 = 1.0;
 const AVERAGING_SHARE: f64 = 0.1;
 /// Largest mesh of one depth, triangles; about 400,000 unknowns.
 const MOST_TRIANGLES: usize = 100_000;
+/// Angle between the strike of a set and the cliff line beyond which a plane section is doubtful, rad (30 degrees).
+const STRIKE_OFF_CLIFF_RAD: f64 = std::f64::consts::FRAC_PI_6;
 /// Young's modulus below which a layer without tensile strength only loads, Pa.
 const SOFT_PA: f64 = 100e6;
 
@@ -26,6 +30,7 @@ pub struct Prepared<'a> {
     cases: CaseSet,
     best: Vec<Option<Strength>>,
     cautious: Vec<Option<Strength>>,
+    joints: [Vec<JointCapacity>; 2],
     ends: Vec<RockEnds>,
     k0_cases: Vec<K0Case>,
     /// Averaging length, m.
@@ -45,6 +50,7 @@ impl Prepared<'_> {
             cases: self.cases.clone(),
             best: self.best.clone(),
             cautious: self.cautious.clone(),
+            joints: self.joints.clone(),
             ends: self.ends.clone(),
             k0_cases: self.k0_cases.clone(),
             averaging_length_m: self.averaging_length_m,
@@ -117,14 +123,77 @@ pub fn prepare(model: &Model) -> Result<Prepared<'_>, Vec<Diagnostic>> {
             Err(error) => faults.push(Diagnostic::error("rock.distribution", format!("rocks.{}", rock.name), error.to_string())),
         }
     }
+    let joints = [false, true].map(|cautious| joint_capacities(&model, cautious, &mut faults));
+    warnings.extend(joint_warnings(&model));
     let averaging_length_m = averaging_length(&model, &site, &mut faults);
     if !faults.is_empty() {
         faults.dedup();
         return Err(faults);
     }
     notes.dedup();
+    warnings.extend(water_warnings(&model, &site));
     let (cases, k0_cases) = (CaseSet::new(&model), k0_cases(&model));
-    Ok(Prepared { cases, best, cautious, ends, k0_cases, averaging_length_m, strength_notes: notes, warnings, site, model })
+    Ok(Prepared { cases, best, cautious, joints, ends, k0_cases, averaging_length_m, strength_notes: notes, warnings, site, model })
+}
+
+/// Strength of every joint set, by means or by the low ends of its inputs.
+fn joint_capacities(model: &Model, cautious: bool, faults: &mut Vec<Diagnostic>) -> Vec<JointCapacity> {
+    let factors = strength_factors(&model.checks.partial_factors, cautious);
+    let mut capacities = Vec::new();
+    for (s, set) in model.joint_sets.iter().enumerate() {
+        match JointCapacity::new(set, cautious, &factors) {
+            Ok(capacity) => capacities.push(capacity),
+            Err(error) => faults.push(Diagnostic::error("joints.strength", format!("joint_sets[{s}]"), format!("`{}`: {error}", set.name))),
+        }
+    }
+    capacities
+}
+
+/// Sets whose strike lies far off the cliff line, and sets too flat to come up to the ground.
+fn joint_warnings(model: &Model) -> Vec<Diagnostic> {
+    let mut warnings = Vec::new();
+    for (s, set) in model.joint_sets.iter().enumerate() {
+        let at = format!("joint_sets[{s}]");
+        if let Some(strike) = set.strike_off_cliff_rad.filter(|a| STRIKE_OFF_CLIFF_RAD < *a) {
+            let message = format!(
+                "the strike of `{}` lies {:.0} degrees off the cliff line: a plane section overstates how far such planes cut the rock off",
+                set.name,
+                strike.to_degrees()
+            );
+            warnings.push(Diagnostic::warning("joints.strike", at.clone(), message));
+        }
+        if crate::depth::joint_lean_rad(set).is_none() {
+            let message =
+                format!("`{}` is too flat to come up to the ground within the section: it has no path and is not checked", set.name);
+            warnings.push(Diagnostic::warning("joints.flat", at, message));
+        }
+    }
+    warnings
+}
+
+/// Water tables that hang above a free face, and seas without a table, one warning a situation.
+fn water_warnings(model: &Model, site: &Site) -> Vec<Diagnostic> {
+    let sections = [site.surveyed_depth_m(), site.search_to_depth_m()].map(|depth| site.at_depth(depth));
+    let mut warnings = Vec::new();
+    for (s, situation) in model.situations.iter().enumerate() {
+        let drop_m = |section: &crate::section::Section| WaterField::new(section, situation).map_or(0.0, |field| field.drawdown_m);
+        let drawdown_m = sections.iter().flatten().map(drop_m).fold(0.0, f64::max);
+        if 0.0 < drawdown_m {
+            let message = format!(
+                "the water table of `{}` lies up to {drawdown_m:.1} m above a free face: it is drawn down to the face over a distance equal to \
+                 the head difference",
+                situation.name
+            );
+            let hint = "give the table as it meets the face; a table that hangs above a free face gives false effective tension";
+            warnings.push(Diagnostic::warning("water.drawdown", format!("situations[{s}].groundwater"), message).hint(hint));
+        }
+        if matches!(situation.sea_level, SeaLevel::Level(_)) && !matches!(situation.groundwater, Some(Groundwater::Table(_))) {
+            let message =
+                format!("`{}` has the sea on the face and no water table: the ground below sea level is taken as full", situation.name);
+            warnings.push(Diagnostic::warning("water.sea-without-table", format!("situations[{s}].sea_level_m"), message));
+        }
+    }
+    warnings
 }
 
 /// A layer softer than 100 MPa without a tensile strength only loads, with a note.

@@ -1,11 +1,13 @@
 //! All checks at one depth: the worst place or line of every check in every situation for cautious and mean inputs.
 use super::CheckKind;
-use super::line::{LineValue, SectionForces};
+use super::joint::Held;
+use super::line::LineValue;
 use super::place::{Pair, PlaceValue, shear, tension};
 use super::states::{InputCase, K0Case};
 use crate::analysis::load_cases::{CaseSet, State};
 use crate::model::{Model, Rock, Uncertain};
 use crate::outcome::CheckResult;
+use crate::strength::joint_set::JointCapacity;
 use crate::strength::{Strength, StrengthError, quantile};
 
 /// Chance below which the low end and above which the high end of an input lies.
@@ -22,6 +24,8 @@ pub struct Evaluation<'a> {
     pub best: &'a [Option<Strength>],
     /// Strengths of each rock for cautious inputs.
     pub cautious: &'a [Option<Strength>],
+    /// Strengths of the joint sets for mean and for cautious inputs.
+    pub joints: &'a [Vec<JointCapacity>; 2],
     /// Ends of each rock's uncertain weights and stress ratios.
     pub ends: &'a [RockEnds],
     /// Choices of the in-situ stress ratio, of which the worse counts.
@@ -169,7 +173,7 @@ fn worst_at(e: &Evaluation<'_>, kind: CheckKind, state: &State, inputs: InputCas
     let coefficients = e.cases.coefficients(e.model, state);
     match kind {
         CheckKind::CliffTopTension | CheckKind::RoofTension | CheckKind::LocalShear => worst_place(e, kind, &coefficients, inputs),
-        CheckKind::SectionBending | CheckKind::SectionShear => worst_line(e, kind, state, &coefficients, inputs),
+        _ => worst_line(e, kind, state, &coefficients, inputs),
     }
 }
 
@@ -206,11 +210,9 @@ fn worst_place(e: &Evaluation<'_>, kind: CheckKind, coefficients: &[f64], inputs
 }
 
 fn worst_line(e: &Evaluation<'_>, kind: CheckKind, state: &State, coefficients: &[f64], inputs: InputCase) -> Option<Worst> {
-    let limits = limits(e, inputs);
     let mut worst: Option<Worst> = None;
-    for (index, line) in e.lines.iter().enumerate() {
-        let forces = line.forces(e.model, state);
-        let Some((along, layer, pair)) = line_pair(e, kind, line, (&forces, coefficients), limits) else { continue };
+    for (index, line) in e.lines.iter().enumerate().filter(|(_, l)| l.set.is_some() == kind.is_of_joints()) {
+        let Some((along, layer, pair)) = line_pair(e, kind, line, (state, coefficients), inputs) else { continue };
         if worst.as_ref().is_none_or(|w| rank(&w.pair) < rank(&pair)) {
             let t = along / line.length_m();
             let at_m = [0, 1].map(|k| line.from_m[k] + t * (line.to_m[k] - line.from_m[k]));
@@ -220,19 +222,24 @@ fn worst_line(e: &Evaluation<'_>, kind: CheckKind, state: &State, coefficients: 
     worst
 }
 
+/// Place along the line, layer there, demand and capacity of a check on a line.
 fn line_pair(
     e: &Evaluation<'_>,
     kind: CheckKind,
     line: &LineValue,
-    (forces, coefficients): (&SectionForces, &[f64]),
-    limits: &[Option<Strength>],
+    (state, coefficients): (&State, &[f64]),
+    inputs: InputCase,
 ) -> Option<(f64, usize, Pair)> {
-    if kind == CheckKind::SectionBending {
-        return line.bending(e.model, forces, limits);
-    }
-    let middle = 0.5 * line.length_m();
-    let layer = line.pieces.iter().find(|p| middle <= p.along_m[1]).or(line.pieces.last())?.layer;
-    Some((middle, layer, line.shear(e.model, forces, coefficients, limits)))
+    let (limits, forces) = (limits(e, inputs), line.effective_forces(e.model, state));
+    let held = Held { model: e.model, limits, joints: &e.joints[usize::from(inputs == InputCase::Cautious)] };
+    let (along, pair) = match kind {
+        CheckKind::SectionBending => return line.bending(e.model, &forces, limits),
+        CheckKind::JointOpening => (line.length_m(), line.opening(&held, &forces, coefficients)?),
+        CheckKind::JointSlip => (0.5 * line.length_m(), line.slip(&held, &forces, coefficients)?),
+        _ => (0.5 * line.length_m(), line.shear(e.model, &forces, coefficients, limits)),
+    };
+    let layer = line.pieces.iter().find(|p| along <= p.along_m[1]).or(line.pieces.last())?.layer;
+    Some((along, layer, pair))
 }
 
 /// The published result with background, closed-form partner and numerical error.
@@ -242,27 +249,34 @@ fn publish(e: &Evaluation<'_>, (kind, inputs): (CheckKind, InputCase), worst: &W
     let utilization = worst.pair.utilization();
     let (background_pa, error, place) = match kind {
         CheckKind::SectionBending => (None, 0.0, None),
-        CheckKind::SectionShear => (None, section_shear_error(e, worst, state, &coefficients, inputs), None),
+        CheckKind::SectionShear | CheckKind::JointOpening | CheckKind::JointSlip => {
+            (None, line_error(e, kind, worst, (state, &coefficients), inputs), None)
+        }
         _ => {
             let place = &e.places[worst.index];
             (background(e, kind, place, &coefficients, inputs), place_error(e, kind, place, &coefficients, inputs), Some(place))
         }
     };
-    let line = matches!(kind, CheckKind::SectionBending | CheckKind::SectionShear).then(|| &e.lines[worst.index]);
-    let per_m = |pa: f64| line.filter(|_| kind == CheckKind::SectionShear).map(|l| pa * l.length_m() / 1e3);
+    let line = (!kind.is_local()).then(|| &e.lines[worst.index]);
+    let sheared = matches!(kind, CheckKind::SectionShear | CheckKind::JointSlip);
+    let per_m = |pa: f64| line.filter(|_| sheared).map(|l| pa * l.length_m() / 1e3);
+    // an opening is a length in m
+    let unit = if kind == CheckKind::JointOpening { 1.0 } else { 1e3 };
+    let rock = &e.model.rocks[e.model.layers[worst.layer].rock].name;
+    let set = line.and_then(|l| l.set).map(|s| &e.model.joint_sets[s].name);
     CheckResult {
         check: kind.id(),
         situation: e.model.situations[state.situation].name.clone(),
         inputs: inputs.id(),
-        demand_kpa: worst.pair.demand_pa / 1e3,
-        capacity_kpa: worst.pair.capacity_pa / 1e3,
+        demand_kpa: worst.pair.demand_pa / unit,
+        capacity_kpa: worst.pair.capacity_pa / unit,
         utilization,
         error,
         background_kpa: background_pa.map(|b| b / 1e3),
         averaging_length_m: place.map(|p| p.length_m),
         over: utilization.map_or(!worst.pair.beyond_apex && 0.0 < worst.pair.demand_pa, |u| 1.0 < u * reserve),
         at: worst.at_m,
-        rock: e.model.rocks[e.model.layers[worst.layer].rock].name.clone(),
+        rock: set.map_or_else(|| rock.clone(), |set| format!("{set} in {rock}")),
         closed_form_demand_kpa: closed_form_pa(e, kind, state).map(|p| p / 1e3),
         k0_case: (!label.is_empty() && kind != CheckKind::SectionBending).then(|| label.to_owned()),
         demand_kn_per_m: per_m(worst.pair.demand_pa),
@@ -296,11 +310,10 @@ fn place_error(e: &Evaluation<'_>, kind: CheckKind, place: &PlaceValue, coeffici
     change(&place.coarse).max(0.5 * change(&place.raw))
 }
 
-fn section_shear_error(e: &Evaluation<'_>, worst: &Worst, state: &State, coefficients: &[f64], inputs: InputCase) -> f64 {
+/// Change of a line's utilization between the last two meshes.
+fn line_error(e: &Evaluation<'_>, kind: CheckKind, worst: &Worst, at: (&State, &[f64]), inputs: InputCase) -> f64 {
     let line = &e.lines[worst.index];
-    let forces = line.forces(e.model, state);
-    let [fine, coarse] =
-        [line.clone(), line.on_coarse_mesh()].map(|l| l.shear(e.model, &forces, coefficients, limits(e, inputs)).utilization());
+    let [fine, coarse] = [line.clone(), line.on_coarse_mesh()].map(|l| line_pair(e, kind, &l, at, inputs).and_then(|p| p.2.utilization()));
     fine.zip(coarse).map_or(0.0, |(a, b)| (a - b).abs())
 }
 
@@ -317,7 +330,7 @@ fn closed_form_pa(e: &Evaluation<'_>, kind: CheckKind, state: &State) -> Option<
     match kind {
         CheckKind::CliffTopTension | CheckKind::SectionBending => Some(3.0 * gamma * depth * depth / h),
         CheckKind::SectionShear => Some(gamma * depth),
-        CheckKind::RoofTension | CheckKind::LocalShear => None,
+        _ => None,
     }
 }
 

@@ -1,6 +1,6 @@
 //! Section forces on a straight rupture line, and what they ask of the rock on it.
 use super::place::Pair;
-use crate::analysis::load_cases::State;
+use crate::analysis::load_cases::{State, saturated_surplus};
 use crate::model::{Carries, Model};
 use crate::strength::Strength;
 
@@ -21,6 +21,25 @@ pub struct LineValue {
     pub pieces: Vec<Piece>,
     /// Layers that only load above the upper end, with their thickness there, m: they break off upright and lie back.
     pub loose_m: Vec<(usize, f64)>,
+    /// Joint set whose path it is; `None` = a rupture line.
+    pub set: Option<usize>,
+    /// What each different water does.
+    pub waters: Vec<LineWater>,
+    /// Water of each situation; a missing entry is dry.
+    pub water_of_situation: Vec<Option<usize>>,
+}
+
+/// One water on a rupture line.
+#[derive(Debug, Clone, Default, PartialEq)]
+pub struct LineWater {
+    /// Forces of the sea on the cut-off body, N/m, and where they act, m.
+    pub sea: Vec<([f64; 2], [f64; 2])>,
+    /// Resultant of `alpha u_w` along the line, N/m, and its moment about the middle with arms up the line, N.
+    pub thrust: [f64; 2],
+    /// Area of each layer below the table in the body, m2; empty where no saturated rock weighs more.
+    pub submerged_m2: Vec<f64>,
+    /// Centroid of each of them, m.
+    pub submerged_centroids_m: Vec<[f64; 2]>,
 }
 
 /// The part of a rupture line in one layer.
@@ -63,7 +82,20 @@ impl LineValue {
         copy
     }
 
-    /// Section forces by equilibrium of the cut-off body under its weight, ground motion and surcharges.
+    /// Water on the line in a situation.
+    fn water(&self, situation: usize) -> Option<&LineWater> {
+        self.water_of_situation.get(situation).copied().flatten().and_then(|w| self.waters.get(w))
+    }
+
+    /// Section forces of the effective stress: those of the total stress with the pore thrust added,
+    /// `N' = N + int alpha u_w ds`, `M' = M + int alpha u_w y ds`.
+    pub fn effective_forces(&self, model: &Model, state: &State) -> SectionForces {
+        let total = self.forces(model, state);
+        let [thrust, moment] = self.water(state.situation).map_or([0.0; 2], |w| w.thrust);
+        SectionForces { axial_n_per_m: total.axial_n_per_m + thrust, moment_n: total.moment_n + moment, ..total }
+    }
+
+    /// Section forces of the total stress by equilibrium of the cut-off body under its weight, ground motion, surcharges and sea.
     ///
     /// With `e` the unit vector up the line, `n` the normal that points out of the body (landward), `F_k` the loads and `r_k`
     /// their arms from the middle of the line:
@@ -83,7 +115,14 @@ impl LineValue {
             let drag = if model.surcharges[q].inertia { kh } else { 0.0 };
             ([-drag * load, -(1.0 - kv) * load], s.1)
         });
-        self.resultants(bodies.chain(strips))
+        let water = self.water(state.situation);
+        let below = water.iter().flat_map(|w| w.submerged_m2.iter().zip(&w.submerged_centroids_m).enumerate());
+        let wet = below.filter(|(_, (area, _))| 0.0 < **area).map(|(j, (area, at))| {
+            let more = state.unit_weight_n_per_m3[model.layers[j].rock] * saturated_surplus(model, j) * area;
+            ([-kh * more, -(1.0 - kv) * more], *at)
+        });
+        let sea = water.iter().flat_map(|w| w.sea.iter().copied());
+        self.resultants(bodies.chain(strips).chain(wet).chain(sea))
     }
 
     /// Resultants of given loads `(force, point)`.
@@ -148,21 +187,27 @@ impl LineValue {
         worst
     }
 
+    /// Effective normal stress of every piece, tension positive, Pa: that of the field, shifted evenly to the sum of equilibrium.
+    pub(super) fn normal_stresses_pa(&self, forces: &SectionForces, coefficients: &[f64]) -> Vec<f64> {
+        let field = |piece: &Piece| coefficients.iter().zip(&piece.normal_pa).map(|(c, s)| c * s).sum::<f64>();
+        let stresses: Vec<f64> = self.pieces.iter().map(field).collect();
+        let total: f64 = self.pieces.iter().zip(&stresses).map(|(p, s)| s * (p.along_m[1] - p.along_m[0])).sum();
+        let correction = (forces.axial_n_per_m - total) / self.length_m();
+        stresses.iter().map(|s| s + correction).collect()
+    }
+
     /// Mean shear over the line against the mean of `c' + sigma' tan phi'`.
     ///
     /// The normal force is that of equilibrium; the stress field only splits it among the layers:
     /// `N_i = N_i,field + (N - sum N_field) l_i / l`. A layer without strength, or pulled beyond its apex, adds nothing.
     pub fn shear(&self, model: &Model, forces: &SectionForces, coefficients: &[f64], limits: &[Option<Strength>]) -> Pair {
         let length = self.length_m();
-        let field = |piece: &Piece| coefficients.iter().zip(&piece.normal_pa).map(|(c, s)| c * s).sum::<f64>();
-        let total: f64 = self.pieces.iter().map(|p| field(p) * (p.along_m[1] - p.along_m[0])).sum();
-        let correction = (forces.axial_n_per_m - total) / length;
-        let strength = |piece: &Piece| {
+        let strength = |(piece, normal): (&Piece, &f64)| {
             let limit = limits[model.layers[piece.layer].rock]?;
-            let compression = -(field(piece) + correction);
-            Some(limit.shear_strength_pa(compression) * (piece.along_m[1] - piece.along_m[0]))
+            Some(limit.shear_strength_pa(-normal) * (piece.along_m[1] - piece.along_m[0]))
         };
-        let capacity: f64 = self.pieces.iter().filter_map(strength).sum();
+        let normals = self.normal_stresses_pa(forces, coefficients);
+        let capacity: f64 = self.pieces.iter().zip(&normals).filter_map(strength).sum();
         Pair { demand_pa: forces.shear_n_per_m / length, capacity_pa: capacity / length, beyond_apex: false }
     }
 }

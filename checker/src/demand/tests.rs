@@ -16,6 +16,9 @@ fn cantilever(depth: f64, h: f64) -> LineValue {
         surcharges: Vec::new(),
         pieces: vec![Piece { layer: 0, along_m: [0.0, h], normal_pa: vec![0.0], normal_coarse_pa: vec![0.0] }],
         loose_m: Vec::new(),
+        set: None,
+        waters: Vec::new(),
+        water_of_situation: Vec::new(),
     }
 }
 

@@ -3,7 +3,6 @@ use fem_core::tensor::major;
 
 use super::record::{Context, Record};
 use crate::analysis::Stress;
-use crate::analysis::in_situ::in_situ_of_state;
 use crate::demand::{Found, InputCase};
 use crate::outcome::FieldSnapshot;
 use crate::section::Section;
@@ -19,6 +18,7 @@ pub fn snapshot(ctx: &Context<'_>, record: &Record, stress: &Stress, zero: (&Sec
     let state = governing.map_or_else(|| mean_state(ctx, 0), |f| f.state.clone());
     let coefficients = ctx.cases.coefficients(ctx.model, &state);
     let effective = effective_stress(ctx, record, stress, &coefficients);
+    let water = ctx.cases.water_of_situation[state.situation];
     let strengths: Vec<Option<Strength>> = ctx.model.layers.iter().map(|l| ctx.best[l.rock]).collect();
     let utilization = |of: &dyn Fn([f64; 3], &Strength) -> f64| {
         let element = |(t, values): (usize, &[[f64; 4]; 6])| {
@@ -37,7 +37,7 @@ pub fn snapshot(ctx: &Context<'_>, record: &Record, stress: &Stress, zero: (&Sec
         situation: ctx.model.situations[state.situation].name.clone(),
         rock_names: (0..record.section.n_layers()).map(|j| ctx.model.rocks[record.section.rock_of_layer(j)].name.clone()).collect(),
         displacement_m: relative_displacement(stress, &coefficients, zero),
-        water_pressure_pa: vec![[0.0; 6]; effective.len()],
+        water_pressure_pa: water_pressure(stress, water),
         tension_utilization: utilization(&tension),
         shear_utilization: utilization(&shear),
         places: best.iter().filter(|f| f.situation == state.situation).map(|f| (f.kind.id(), f.result.at)).collect(),
@@ -62,18 +62,23 @@ pub fn mean_state(ctx: &Context<'_>, situation: usize) -> crate::analysis::load_
 /// ```
 fn effective_stress(ctx: &Context<'_>, record: &Record, stress: &Stress, coefficients: &[f64]) -> Vec<[[f64; 4]; 6]> {
     let change = stress.recovered_of(coefficients);
-    let mut overburden = vec![0.0; record.section.n_layers()];
-    let mut element = |t: usize| {
+    let element = |t: usize| {
         let layer = stress.mesh.regions[t] as usize;
         let nu = stress.materials[layer].poissons_ratio();
         [0, 1, 2, 3, 4, 5].map(|k| {
-            record.section.overburden_into(stress.mesh.points_m[stress.mesh.triangles[t][k] as usize], &mut overburden);
-            let initial = in_situ_of_state(&ctx.cases, coefficients, layer, &overburden);
+            let column = stress.columns.at(&record.section, stress.mesh.points_m[stress.mesh.triangles[t][k] as usize]);
+            let initial = column.in_situ_of_state(&ctx.cases, coefficients, layer);
             let d = change[stress.layout().element_nodes[t][k] as usize];
             [initial[0] + d[0], initial[1] + d[1], initial[2] + d[2], initial[0] + nu * (d[0] + d[1])]
         })
     };
-    (0..stress.mesh.triangles.len()).map(&mut element).collect()
+    (0..stress.mesh.triangles.len()).map(element).collect()
+}
+
+/// Pore pressure times its area ratio at the nodes of every element, Pa.
+fn water_pressure(stress: &Stress, water: Option<usize>) -> Vec<[f64; 6]> {
+    let Some(field) = water.map(|w| &stress.columns.fields[w]) else { return vec![[0.0; 6]; stress.mesh.triangles.len()] };
+    stress.mesh.triangles.iter().map(|t| t.map(|n| field.pressure_pa(stress.mesh.points_m[n as usize]))).collect()
 }
 
 /// Displacement against depth 0 at every node, m.

@@ -1,7 +1,8 @@
 //! Where demands are taken at one depth: surface and contact segments, discs inside the rock, rupture lines.
+use super::joints::{joint_paths, lean_rad};
 use crate::analysis::samples::{Weighted, on_disc, on_segment};
 use crate::demand::CheckKind;
-use crate::model::Probe;
+use crate::model::{Model, Probe};
 use crate::section::{Feature, FreeBody, Place, PlaceKind, Section};
 
 /// Spacing of places on the surface, in averaging lengths.
@@ -41,6 +42,8 @@ pub struct TargetLine {
     pub to_m: [f64; 2],
     /// Layer and ends along the line of each piece, m.
     pub pieces: Vec<(usize, [f64; 2])>,
+    /// Joint set whose path it is.
+    pub set: Option<usize>,
     /// The body that it cuts off.
     pub body: FreeBody,
 }
@@ -60,7 +63,7 @@ pub struct Geometry {
 
 impl Geometry {
     /// Targets of a section with a given averaging length, and the model's probes.
-    pub fn new(section: &Section, averaging_length_m: f64, probes: &[Probe]) -> Self {
+    pub fn new(section: &Section, model: &Model, averaging_length_m: f64, probes: &[Probe]) -> Self {
         let spacing = PLACE_SPACING * averaging_length_m;
         let mut places: Vec<Target> =
             section.surface_places(spacing).iter().filter_map(|p| surface_target(section, p, averaging_length_m)).collect();
@@ -68,7 +71,9 @@ impl Geometry {
         let (discs, cell_m2) = discs(section, averaging_length_m);
         places.extend(discs);
         let probes = probes.iter().map(|p| probe_samples(section, p)).collect();
-        Self { places, cell_m2, lines: rupture_lines(section), probes }
+        let mut lines = rupture_lines(section, model);
+        lines.extend(joint_paths(section, model, averaging_length_m));
+        Self { places, cell_m2, lines, probes }
     }
 }
 
@@ -131,13 +136,14 @@ fn discs(section: &Section, diameter_m: f64) -> (Vec<Target>, f64) {
     (targets, spacing * spacing)
 }
 
-/// Straight lines from the back and the innermost fifth of the roof to the ground.
-fn rupture_lines(section: &Section) -> Vec<TargetLine> {
+/// Straight lines from the back and the innermost fifth of the roof to the ground: evenly spread leans and those of the joint sets.
+fn rupture_lines(section: &Section, model: &Model) -> Vec<TargetLine> {
     let Some(back) = section.back_m() else { return Vec::new() };
     let starts =
         STARTS.iter().filter_map(|share| if *share <= 0.0 { Some(back) } else { roof_point(section, back[0] - share * section.depth_m()) });
     let n = ((LEANS_DEG.1 - LEANS_DEG.0) / LEANS_DEG.2).round() as usize;
-    let leans: Vec<f64> = (0..=n).map(|k| (LEANS_DEG.0 + k as f64 * LEANS_DEG.2).to_radians()).collect();
+    let mut leans: Vec<f64> = (0..=n).map(|k| (LEANS_DEG.0 + k as f64 * LEANS_DEG.2).to_radians()).collect();
+    leans.extend(model.joint_sets.iter().filter_map(lean_rad));
     starts.flat_map(|start| leans.iter().filter_map(move |&lean| rupture_line(section, start, lean)).collect::<Vec<_>>()).collect()
 }
 
@@ -183,7 +189,7 @@ pub fn line_between(section: &Section, from_m: [f64; 2], to_m: [f64; 2]) -> Opti
             _ => pieces.push((layer, [pair[0], pair[1]])),
         }
     }
-    Some(TargetLine { from_m, to_m, pieces, body: section.free_body([from_m, to_m]) })
+    Some(TargetLine { from_m, to_m, pieces, set: None, body: section.free_body([from_m, to_m]) })
 }
 
 /// Distances along a line at which it crosses a contact.

@@ -7,6 +7,7 @@ use fem_core::tensor::{major, minor};
 use super::adapt::{Budget, first_sizes, make_mesh, next_sizes, same_sizes};
 use super::fields::mean_state;
 use super::geometry::{Geometry, TargetLine};
+use super::line_water::{line_water, thrust};
 use crate::analysis::load_cases::{CaseSet, superpose};
 use crate::analysis::samples::on_segment;
 use crate::analysis::stress::SolveQuality;
@@ -15,6 +16,7 @@ use crate::demand::{Evaluation, Found, InputCase, K0Case, LineValue, Piece, Plac
 use crate::model::{Carries, Model};
 use crate::section::{Section, Site};
 use crate::strength::Strength;
+use crate::strength::joint_set::JointCapacity;
 
 /// Fewest meshes: an error needs a change between two.
 const FEWEST_MESHES: usize = 2;
@@ -37,6 +39,8 @@ pub struct Context<'a> {
     pub best: Vec<Option<Strength>>,
     /// Strengths for cautious inputs.
     pub cautious: Vec<Option<Strength>>,
+    /// Strengths of the joint sets for mean and for cautious inputs.
+    pub joints: [Vec<JointCapacity>; 2],
     /// Ends of the uncertain weights and stress ratios.
     pub ends: Vec<RockEnds>,
     /// Choices of the in-situ stress ratio.
@@ -96,7 +100,7 @@ pub fn first_mesh(ctx: &Context<'_>, depth_m: f64) -> Result<(Section, Arc<Mesh>
 /// [`AnalysisError`] of geometry, mesh or solution. A missed target error is no error: it stands in the checks.
 pub fn record(ctx: &Context<'_>, depth_m: f64, zero: Option<(&Section, &Stress)>) -> Result<(Record, Stress), AnalysisError> {
     let section = ctx.site.at_depth(depth_m)?;
-    let geometry = Geometry::new(&section, ctx.averaging_length_m, &ctx.model.probes);
+    let geometry = Geometry::new(&section, ctx.model, ctx.averaging_length_m, &ctx.model.probes);
     let mut mesh = make_mesh(&section, &first_sizes(&section, ctx.averaging_length_m, &ctx.model.probes))?;
     let mut last: Option<(Record, Stress)> = None;
     for round in 0..MOST_MESHES {
@@ -129,7 +133,7 @@ pub fn record(ctx: &Context<'_>, depth_m: f64, zero: Option<(&Section, &Stress)>
 /// [`AnalysisError`] of geometry, mesh or solution.
 pub fn record_on(ctx: &Context<'_>, depth_m: f64, like: &Record) -> Result<Record, AnalysisError> {
     let section = ctx.site.at_depth(depth_m)?;
-    let geometry = Geometry::new(&section, ctx.averaging_length_m, &[]);
+    let geometry = Geometry::new(&section, ctx.model, ctx.averaging_length_m, &[]);
     let same_body = section.extents() == like.section.extents();
     let mesh =
         if same_body { like.mesh.clone() } else { make_mesh(&section, &same_sizes(&section, &like.mesh.0, ctx.averaging_length_m))? };
@@ -150,6 +154,7 @@ fn evaluation<'a>(ctx: &'a Context<'_>, record: &'a Record, inputs: &'a [InputCa
         cases: &ctx.cases,
         best: &ctx.best,
         cautious: &ctx.cautious,
+        joints: &ctx.joints,
         ends: &ctx.ends,
         k0_cases: &ctx.k0_cases,
         inputs,
@@ -228,6 +233,9 @@ pub fn line_value(model: &Model, section: &Section, stress: &Stress, line: &Targ
         surcharges: model.surcharges.iter().map(|s| strip(s.x_m)).collect(),
         pieces: line.pieces.iter().map(piece).collect(),
         loose_m: Vec::new(),
+        set: line.set,
+        waters: stress.columns.fields.iter().map(|f| line_water(section, f, line, body, stress.columns.has_saturated())).collect(),
+        water_of_situation: stress.cases.water_of_situation.clone(),
     }
 }
 
@@ -256,6 +264,9 @@ pub fn rupture_value(model: &Model, section: &Section, stress: &Stress, line: &T
         let width = (surcharge.x_m[1].min(entry[0]) - from).max(0.0);
         let middle = from + 0.5 * width;
         *strip = (width, [middle, section.ground_level_m(middle)]);
+    }
+    for (water, field) in value.waters.iter_mut().zip(&stress.columns.fields) {
+        water.thrust = thrust(field, [line.from_m, entry]);
     }
     let area = 0.5 * (line.to_m[0] - entry[0]) * (ground[1] - entry[1]);
     let centroid = [0, 1].map(|k| (entry[k] + ground[k] + line.to_m[k]) / 3.0);

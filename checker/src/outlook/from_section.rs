@@ -177,6 +177,8 @@ pub fn demand_model(
                 CheckKind::CliffTopTension | CheckKind::RoofTension => {
                     entries.iter().enumerate().for_each(|(e, r)| push(Law::Tension { strength: e }, Some(*r)));
                 }
+                // paths of joint sets are not sampled
+                CheckKind::JointOpening | CheckKind::JointSlip => {}
             }
         }
     }
@@ -220,9 +222,17 @@ impl Maker<'_> {
     fn coefficients(&self) -> Vec<Coefficient> {
         let k0 = |layer: usize| self.inputs.k0[self.rock_of(layer)].expect("rocks of layers are inputs");
         let of = |case: &LoadCase| match *case {
-            LoadCase::Weight { layer } | LoadCase::Seaward { layer } | LoadCase::Upward { layer } => Coefficient::Input(self.gamma(layer)),
-            LoadCase::Horizontal { layer, above } => Coefficient::Product(k0(layer), self.gamma(above)),
-            LoadCase::Surcharge { .. } | LoadCase::SurchargeSeaward { .. } => Coefficient::One,
+            LoadCase::Weight { layer }
+            | LoadCase::Seaward { layer }
+            | LoadCase::Upward { layer }
+            | LoadCase::Saturated { layer, .. }
+            | LoadCase::SaturatedSeaward { layer, .. }
+            | LoadCase::SaturatedUpward { layer, .. } => Coefficient::Input(self.gamma(layer)),
+            LoadCase::Horizontal { layer, above } | LoadCase::SaturatedHorizontal { layer, above, .. } => {
+                Coefficient::Product(k0(layer), self.gamma(above))
+            }
+            LoadCase::WaterHorizontal { layer, .. } => Coefficient::Input(k0(layer)),
+            LoadCase::Surcharge { .. } | LoadCase::SurchargeSeaward { .. } | LoadCase::Water { .. } => Coefficient::One,
         };
         self.cases.cases.iter().map(of).collect()
     }
@@ -257,11 +267,11 @@ impl Maker<'_> {
     }
 
     /// Section forces `[N, V, M]` of a line for each load case: forces are linear in the unit weights, so those of one rock stand
-    /// with the weight of the first layer of that rock, and those of the surcharges with the first constant case.
+    /// with the weight of the first layer of that rock, and those of the surcharges and of the water with the first constant case.
     fn line_cases(&self, line: &LineValue, situation: usize) -> Vec<[f64; 3]> {
         let n_rocks = self.model.rocks.len();
         let forces = |weights: &[f64]| {
-            let f = line.forces(self.model, &self.state(situation, weights));
+            let f = line.effective_forces(self.model, &self.state(situation, weights));
             [f.axial_n_per_m, f.shear_n_per_m, f.moment_n]
         };
         let constant = forces(&vec![0.0; n_rocks]);
@@ -276,7 +286,7 @@ impl Maker<'_> {
                 let with = forces(&one);
                 [0, 1, 2].map(|k| with[k] - constant[k])
             }
-            LoadCase::Surcharge { .. } => constant_left.take().unwrap_or_default(),
+            LoadCase::Surcharge { .. } | LoadCase::Water { .. } => constant_left.take().unwrap_or_default(),
             _ => [0.0; 3],
         };
         self.cases.cases.iter().map(of).collect()
@@ -285,7 +295,7 @@ impl Maker<'_> {
     /// Fibre stresses at both ends of the pieces of every line in one rock, by the stiffness-weighted section (eq. (7.6)).
     fn fibres(&self, at: &SectionValues, situation: usize, rock: usize) -> Places {
         let mut places = Places::default();
-        for line in at.lines {
+        for line in at.lines.iter().filter(|l| l.set.is_none()) {
             let stiffness = |layer: usize| match self.model.layers[layer].carries {
                 Carries::LoadAndTension => {
                     let rock = &self.model.rocks[self.rock_of(layer)];
@@ -322,7 +332,7 @@ impl Maker<'_> {
         let mut places = Places::default();
         let scales = self.scales(situation);
         let layers: Vec<usize> = self.holding_layers().map(|l| l.0).collect();
-        for line in at.lines {
+        for line in at.lines.iter().filter(|l| l.set.is_none()) {
             let length = line.length_m();
             let cases = self.line_cases(line, situation);
             let field = |layer: usize, k: usize| -> f64 {

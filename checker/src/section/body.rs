@@ -181,6 +181,11 @@ impl Section {
         self.rock_of_layer(self.layer_at(p))
     }
 
+    /// Lowest of the contacts that bound a layer from below at x, m: where this layer and those above it end; `None` for the last.
+    pub(crate) fn layer_base_m(&self, layer: usize, x_m: f64) -> Option<f64> {
+        (layer + 1 < self.n_layers()).then(|| self.shared.strata.base_of_upper_m(layer, x_m))
+    }
+
     /// Level of contact `contact` (the base of that layer) as drawn, whether a higher layer cuts it or not, m.
     pub fn contact_level_m(&self, contact: usize, x_m: f64) -> f64 {
         self.shared.strata.contact_m(contact, x_m)

@@ -59,12 +59,8 @@ fn property(field: &'static Field, parent: &str) -> Value {
     if let Need::Derived(how) = field.need {
         description += &["; left out: ", how].concat();
     }
-    if not_yet::find(&pattern, false).is_some() {
-        description += if not_yet::find(&pattern, true).is_some() {
-            "; not available yet"
-        } else {
-            "; only as a word, the other forms are not available yet"
-        };
+    if not_yet::find(&pattern).is_some() {
+        description += "; not available yet";
     }
     schema.insert("description".into(), description.into());
     if let Need::Default(preset) | Need::Neutral(preset) = field.need {

@@ -85,8 +85,7 @@ impl Walk<'_> {
 
     fn field(&mut self, field: &'static Field, at: &At, value: &Spanned<DeValue<'_>>) -> Val {
         let read = self.value(&field.kind, at, value);
-        let is_word = matches!(value.get_ref(), DeValue::String(_));
-        if let Some(entry) = not_yet::find(&at.pattern, is_word) {
+        if let Some(entry) = not_yet::find(&at.pattern) {
             let message = format!("{} is not available yet: this version cannot handle {}", field.key, entry.what);
             self.error(Diagnostic::error("key.not-available", &at.path, message).hint("leave this key out for now"), value);
         }

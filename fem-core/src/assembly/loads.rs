@@ -1,8 +1,9 @@
 //! Consistent node loads, N/m, vectors of length `2 * n_nodes`. Source of all: docs/theory.md eq. (1.10).
 use super::forces::scatter;
+use super::split::{KinksOf, SMOOTH, rule};
 use crate::element::{add_stress_divergence, element_points_m, interpolate, mapped, shape};
 use crate::mesh::{Mesh, NO_ELEMENT, TaggedEdge};
-use crate::quadrature::{TRIANGLE_DEGREE_4, gauss_unit};
+use crate::quadrature::gauss_unit;
 
 /// Points of the Gauss rule on a side or a piece of it: exact to degree 7, a quadratic side with quadratic `N` and linear pressure has 5.
 const SIDE_POINTS: usize = 4;
@@ -20,11 +21,21 @@ pub fn body_force_of(
     force_n_per_m3: &dyn Fn(usize, [f64; 2]) -> [f64; 2],
     elements: impl IntoIterator<Item = u32>,
 ) -> Vec<f64> {
+    body_force_split(mesh, force_n_per_m3, SMOOTH, elements)
+}
+
+/// [`body_force_of`] for a force that jumps or kinks on straight lines inside elements; exact on straight-sided elements.
+pub fn body_force_split(
+    mesh: &Mesh,
+    force_n_per_m3: &dyn Fn(usize, [f64; 2]) -> [f64; 2],
+    kinks: KinksOf<'_>,
+    elements: impl IntoIterator<Item = u32>,
+) -> Vec<f64> {
     let mut loads = vec![0.0; 2 * mesh.points_m.len()];
     for element in elements.into_iter().map(|e| e as usize) {
         let points = element_points_m(mesh, element);
         let mut f = [[0.0; 2]; 6];
-        for (xi, weight) in TRIANGLE_DEGREE_4 {
+        for &(xi, weight) in rule([points[0], points[1], points[2]], &kinks(element)).iter() {
             let w = weight * crate::element::determinant_m2(&points, xi);
             let b = force_n_per_m3(element, interpolate(&points, xi));
             for (f, n) in f.iter_mut().zip(shape(xi)) {
@@ -50,11 +61,21 @@ pub fn initial_stress_of(
     stress_pa: &dyn Fn(usize, [f64; 2]) -> [f64; 3],
     elements: impl IntoIterator<Item = u32>,
 ) -> Vec<f64> {
+    initial_stress_split(mesh, stress_pa, SMOOTH, elements)
+}
+
+/// [`initial_stress_of`] for a stress that jumps or kinks on straight lines inside elements; exact on straight-sided elements.
+pub fn initial_stress_split(
+    mesh: &Mesh,
+    stress_pa: &dyn Fn(usize, [f64; 2]) -> [f64; 3],
+    kinks: KinksOf<'_>,
+    elements: impl IntoIterator<Item = u32>,
+) -> Vec<f64> {
     let mut loads = vec![0.0; 2 * mesh.points_m.len()];
     for element in elements.into_iter().map(|e| e as usize) {
         let points = element_points_m(mesh, element);
         let mut f = [[0.0; 2]; 6];
-        for (xi, weight) in TRIANGLE_DEGREE_4 {
+        for &(xi, weight) in rule([points[0], points[1], points[2]], &kinks(element)).iter() {
             let at = mapped(&points, xi);
             let stress = stress_pa(element, interpolate(&points, xi));
             add_stress_divergence(&mut f, &at, stress, -weight * at.det_m2);

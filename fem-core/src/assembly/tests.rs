@@ -137,3 +137,27 @@ fn a_side_seen_from_its_right_element_has_the_opposite_normal() {
         close(b, *a, 1e-15);
     }
 }
+
+/// A weight that jumps on a sloping line through the elements and a stress whose divergence balances it: the two loads cancel at every
+/// node inside (equilibrium; tolerance: round-off of sums of 1e4 N/m).
+#[test]
+fn a_jump_inside_elements_is_integrated_exactly() {
+    let mesh = rectangle(Grid { n_u: 5, n_v: 4, curved: false }, [0.0, 0.0], [4.0, 2.0], 0.0);
+    // level 1.1 + 0.3 x, weight 10 kN/m3 below it
+    let depth = |p: [f64; 2]| (1.1 + 0.3 * p[0] - p[1]).max(0.0);
+    let kinks: KinksOf<'_> = &|_| vec![[1.1, 0.3, -1.0]];
+    let all = || 0..mesh.triangles.len() as u32;
+    let weight = body_force_split(&mesh, &|_, p| [0.0, if 0.0 < depth(p) { -10e3 } else { 0.0 }], kinks, all());
+    let stress = initial_stress_split(&mesh, &|_, p| [0.0, -10e3 * depth(p), 0.0], kinks, all());
+    let mut inside = 0;
+    for (node, p) in mesh.points_m.iter().enumerate() {
+        if 0.0 < p[0] && p[0] < 4.0 && 0.0 < p[1] && p[1] < 2.0 {
+            inside += 1;
+            close(weight[2 * node + 1] + stress[2 * node + 1], 0.0, 1e-9);
+        }
+    }
+    assert!(30 < inside, "{inside}");
+    let area: f64 = (0..400).map(|k| (1.1 + 0.3 * (f64::from(k) + 0.5) * 0.01_f64).min(2.0) * 0.01).sum();
+    let total: f64 = weight.iter().skip(1).step_by(2).sum();
+    close(total, -10e3 * area, 1.0);
+}

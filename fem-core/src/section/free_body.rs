@@ -5,7 +5,7 @@
 //! elements. Source: docs/theory.md eq. (1.17).
 use super::{Cut, Resultants};
 use crate::assembly::{
-    body_force_of, edge_pieces, edge_traction, initial_stress_of, internal_forces_of, side_point, side_slope, walk_edge,
+    KinksOf, body_force_split, edge_pieces, edge_traction, initial_stress_split, internal_forces_of, side_point, side_slope, walk_edge,
 };
 use crate::crossing::{crossings, pieces};
 use crate::elasticity::Elastic;
@@ -17,8 +17,11 @@ use crate::quadrature::gauss_unit;
 /// The loads that act in one load case, as they were assembled.
 #[derive(Clone, Copy)]
 pub struct CutLoads<'a> {
-    /// Body force in N/m³, constant in each element.
-    pub body_force_n_per_m3: &'a dyn Fn(usize) -> [f64; 2],
+    /// Body force in N/m³ at a point of an element. Where the cut passes through an element its value at the mean of the corners counts
+    /// for what lies between the face and the line: exact for a force constant in each element.
+    pub body_force_n_per_m3: &'a dyn Fn(usize, [f64; 2]) -> [f64; 2],
+    /// Lines on which body force or given stress kink or jump inside an element.
+    pub kinks: KinksOf<'a>,
     /// Loaded sides.
     pub edges: &'a [TaggedEdge],
     /// Points at which the traction jumps or kinks, m.
@@ -158,8 +161,8 @@ impl FreeBody {
         let mut forces = internal_forces_of(mesh, materials, displacements_m, elements());
         let own_edges = edges_of(loads.edges, &self.elements);
         let given = [
-            body_force_of(mesh, &|e, _| (loads.body_force_n_per_m3)(e), elements()),
-            initial_stress_of(mesh, loads.given_stress_pa, elements()),
+            body_force_split(mesh, loads.body_force_n_per_m3, loads.kinks, elements()),
+            initial_stress_split(mesh, loads.given_stress_pa, loads.kinks, elements()),
             edge_traction(mesh, &own_edges, loads.breaks_m, loads.traction_pa),
         ];
         for load in &given {
@@ -210,7 +213,7 @@ impl FreeBody {
                 }
             }
         }
-        let b = (loads.body_force_n_per_m3)(element);
+        let b = (loads.body_force_n_per_m3)(element, mesh.corner_mean_m(element));
         let (normal, shear) = (b[0] * n[0] + b[1] * n[1], b[0] * e[0] + b[1] * e[1]);
         Resultants { normal_n_per_m: area * normal, shear_n_per_m: area * shear, moment_n: eta_moment * normal - nu_moment * shear }
     }

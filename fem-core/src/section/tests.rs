@@ -81,7 +81,8 @@ fn c06_node_forces_give_the_section_forces_of_an_overhang() {
             let cut = Cut { from_m: [lean, THICKNESS], to_m: [0.0, 0.0] };
             let body = free_body(&mesh, &locator, cut).unwrap();
             let none = CutLoads {
-                body_force_n_per_m3: &|_| [0.0, -GAMMA],
+                body_force_n_per_m3: &|_, _| [0.0, -GAMMA],
+                kinks: crate::assembly::SMOOTH,
                 edges: &[],
                 breaks_m: &[],
                 traction_pa: &|_, _| [0.0, 0.0],
@@ -109,7 +110,8 @@ fn c06_node_forces_give_the_section_forces_of_an_overhang() {
             let total = integral(&|x| 20e3 + 1e3 * x);
             let first = integral(&|x| (20e3 + 1e3 * x) * x);
             let strip_loads = CutLoads {
-                body_force_n_per_m3: &|_| [0.0; 2],
+                body_force_n_per_m3: &|_, _| [0.0; 2],
+                kinks: crate::assembly::SMOOTH,
                 edges: &top,
                 breaks_m: &breaks,
                 traction_pa: &|p, n| [-strip(p) * n[0], -strip(p) * n[1]],
@@ -179,7 +181,8 @@ fn both_sides_of_a_cut_through_a_curved_body_agree() {
     let u =
         Problem { mesh: &mesh, materials: &rock, supports: &supports }.factor().unwrap().solve(&[load]).unwrap().remove(0).displacements_m;
     let loads = CutLoads {
-        body_force_n_per_m3: &|_| [1e3, -GAMMA],
+        body_force_n_per_m3: &|_, _| [1e3, -GAMMA],
+        kinks: crate::assembly::SMOOTH,
         edges: &back,
         breaks_m: &[],
         traction_pa: &|p, n| [-pressure(p) * n[0], -pressure(p) * n[1]],

@@ -1,11 +1,11 @@
 //! Weight against reactions, and three ways to the section forces: statics, nodal forces, integrated stress.
+use fem_core::mesh::TaggedEdge;
 use fem_core::section::{Cut as FemCut, CutLoads, CutPoint, CutSampler, Resultants, free_body};
 use fem_core::stress::raw_stress_pa;
 
 use super::{Context, CutResult, Record, Section, Stress};
-use crate::analysis::in_situ::in_situ_of_state;
 use crate::analysis::load_cases::State;
-use crate::analysis::loads::{body_force_of_state, ground_edges, supports, surcharge_ends_m, traction_of_state};
+use crate::analysis::loads::{body_force_of_state, ground_edges, sea_ends_m, supports, surcharge_ends_m, surface_edges, traction_of_state};
 use crate::depth::{line_value, rupture_line};
 use crate::model::Cut;
 use fem_core::system::Problem;
@@ -16,6 +16,7 @@ struct Loaded<'a> {
     section: &'a Section,
     stress: &'a Stress,
     coefficients: Vec<f64>,
+    water: Option<usize>,
     displacements_m: Vec<f64>,
     recovered_pa: Vec<[f64; 3]>,
 }
@@ -25,26 +26,51 @@ impl<'a> Loaded<'a> {
         let coefficients = ctx.cases.coefficients(ctx.model, state);
         let displacements_m = stress.displacements_of(&coefficients);
         let recovered_pa = stress.recovered_of(&coefficients);
-        Self { ctx, section, stress, coefficients, displacements_m, recovered_pa }
+        let water = ctx.cases.water_of_situation[state.situation];
+        Self { ctx, section, stress, coefficients, water, displacements_m, recovered_pa }
     }
 
     fn layer(&self, element: usize) -> usize {
         self.stress.mesh.regions[element] as usize
     }
 
-    fn in_situ(&self, element: usize, point: [f64; 2]) -> [f64; 3] {
-        in_situ_of_state(&self.ctx.cases, &self.coefficients, self.layer(element), &self.section.overburden_m(point))
+    /// Total stress less `D eps(u)`: in-situ effective stress less pore pressure on the diagonal.
+    fn given(&self, element: usize, point: [f64; 2]) -> [f64; 3] {
+        let column = self.stress.columns.at(self.section, point);
+        let [x, z, xz] = column.in_situ_of_state(&self.ctx.cases, &self.coefficients, self.layer(element));
+        let pressure = column.pressure_of_pa(self.water);
+        [x - pressure, z - pressure, xz]
+    }
+
+    /// Sides that carry surcharges or the sea, and where their pressures begin and end.
+    fn loaded_edges(&self) -> (Vec<TaggedEdge>, Vec<[f64; 2]>) {
+        let sea = self.water.and_then(|w| self.stress.columns.fields[w].sea);
+        let mut breaks = surcharge_ends_m(self.ctx.model, self.section);
+        let Some((level, _)) = sea else { return (ground_edges(self.section, &self.stress.mesh), breaks) };
+        breaks.extend(sea_ends_m(self.section, level));
+        (surface_edges(&self.stress.mesh), breaks)
+    }
+
+    /// Pressure of surcharges and sea at a point of the surface, Pa.
+    fn traction(&self, p: [f64; 2], normal: [f64; 2]) -> [f64; 2] {
+        let on_ground = (p[1] - self.section.ground_level_m(p[0])).abs() <= 1e-3;
+        let strip = if on_ground { traction_of_state(self.ctx.model, &self.ctx.cases, &self.coefficients, p, normal) } else { [0.0; 2] };
+        let sea = self.water.map_or(0.0, |w| self.stress.columns.fields[w].sea_pressure_pa(p[1]));
+        [strip[0] - sea * normal[0], strip[1] - sea * normal[1]]
     }
 
     /// Resultants by consistent nodal forces of the body on the right of the cut; `None` where it does not sever the body.
     fn by_nodes(&self, cut: FemCut) -> Option<Resultants> {
         let body = free_body(&self.stress.mesh, &self.stress.locator, cut).ok()?;
+        let (edges, breaks) = self.loaded_edges();
+        let (mesh, columns) = (&self.stress.mesh, &self.stress.columns);
         let loads = CutLoads {
-            body_force_n_per_m3: &|e| body_force_of_state(&self.ctx.cases, &self.coefficients, self.layer(e)),
-            edges: &ground_edges(self.section, &self.stress.mesh),
-            breaks_m: &surcharge_ends_m(self.ctx.model, self.section),
-            traction_pa: &|p, n| traction_of_state(self.ctx.model, &self.ctx.cases, &self.coefficients, p, n),
-            given_stress_pa: &|e, p| self.in_situ(e, p),
+            body_force_n_per_m3: &|e, p| body_force_of_state(&self.ctx.cases, columns, &self.coefficients, (self.layer(e), p)),
+            kinks: &|e| columns.kinks_of(self.water, &mesh.triangles[e].map(|n| mesh.points_m[n as usize])),
+            edges: &edges,
+            breaks_m: &breaks,
+            traction_pa: &|p, n| self.traction(p, n),
+            given_stress_pa: &|e, p| self.given(e, p),
         };
         Some(body.resultants(&self.stress.mesh, &self.stress.materials, &self.displacements_m, &loads))
     }
@@ -53,7 +79,7 @@ impl<'a> Loaded<'a> {
     fn by_stress(&self, cut: FemCut) -> (Resultants, Resultants) {
         let sampler = CutSampler::new(&self.stress.mesh, &self.stress.locator, cut);
         let with = |p: &CutPoint, change: [f64; 3]| {
-            let initial = self.in_situ(p.element as usize, p.point_m);
+            let initial = self.given(p.element as usize, p.point_m);
             [0, 1, 2].map(|k| initial[k] + change[k])
         };
         let recovered = |p: &CutPoint| with(p, self.stress.layout().evaluate(&self.recovered_pa, p.element as usize, p.xi));

@@ -5,6 +5,7 @@ use super::{
 };
 use fem_core::tensor::{major, minor, principal};
 
+use crate::analysis::columns::Columns;
 use crate::analysis::load_cases::State;
 use crate::analysis::samples::on_segment;
 use crate::model::Probe;
@@ -84,7 +85,7 @@ fn probe_result(
         probe.toward.zip(probe.over_m).map_or(probe.at_m, |(d, l)| [probe.at_m[0] + 0.5 * l * d[0], probe.at_m[1] + 0.5 * l * d[1]]);
     let layer = section.layer_at(middle);
     let tensor = crate::analysis::load_cases::superpose(coefficients, &stress.mean_pa(section, &samples, layer));
-    result.stress_kpa = Some(in_kpa(ctx, section, tensor, (probe.at_m, layer), state));
+    result.stress_kpa = Some(in_kpa(ctx, (section, &stress.columns), tensor, (probe.at_m, layer), state));
     if probe.toward.is_some() {
         let one = |&(p, w): &([f64; 2], f64)| w * major(stress.at_pa(section, coefficients, p, section.layer_at(p)));
         result.mean_of_major = Some(samples.iter().map(one).sum::<f64>() / 1e3);
@@ -96,11 +97,16 @@ fn probe_result(
 }
 
 /// Components and principal values in kPa; `yy` by plane strain of the change from the in-situ state.
-fn in_kpa(ctx: &Context<'_>, section: &Section, tensor: [f64; 3], (at, layer): ([f64; 2], usize), state: &State) -> StressKpa {
+fn in_kpa(
+    ctx: &Context<'_>,
+    (section, columns): (&Section, &Columns),
+    tensor: [f64; 3],
+    (at, layer): ([f64; 2], usize),
+    state: &State,
+) -> StressKpa {
     let rock = &ctx.model.rocks[section.rock_of_layer(layer)];
-    let overburden = section.overburden_m(at);
-    let vertical: f64 = -overburden.iter().enumerate().map(|(j, t)| state.unit_weight_n_per_m3[section.rock_of_layer(j)] * t).sum::<f64>();
-    let horizontal = state.k0[section.rock_of_layer(layer)] * vertical;
+    let coefficients = ctx.cases.coefficients(ctx.model, state);
+    let [horizontal, vertical, _] = columns.at(section, at).in_situ_of_state(&ctx.cases, &coefficients, layer);
     let yy = horizontal + rock.poissons_ratio * (tensor[0] - horizontal + tensor[1] - vertical);
     let [xx, zz, xz] = tensor.map(|t| t / 1e3);
     StressKpa { xx, zz, xz, yy: yy / 1e3, major: major(tensor) / 1e3, minor: minor(tensor) / 1e3 }

@@ -44,6 +44,9 @@ fn line(n_cases: usize) -> LineValue {
         surcharges: vec![(2.0, [2.0, 8.0])],
         pieces: vec![piece(2, 0.0, 3.0), piece(1, 3.0, 6.0), piece(0, 6.0, 65.0_f64.sqrt())],
         loose_m: Vec::new(),
+        set: None,
+        waters: vec![],
+        water_of_situation: vec![],
     }
 }
 
@@ -54,7 +57,7 @@ fn by_the_checks(m: &Model, (places, line): (&[PlaceValue], &LineValue), check: 
     let coefficients = cases.coefficients(m, &state);
     let strength = Strength { tensile_strength_pa: 500e3, cohesion_pa: 1000e3, tan_friction: 35_f64.to_radians().tan(), cut_from_pa: None };
     let limits = [Some(strength), Some(strength)];
-    let forces = line.forces(m, &state);
+    let forces = line.effective_forces(m, &state);
     if check == "section shear" {
         let pair = line.shear(m, &forces, &coefficients, &limits);
         return pair.capacity_pa - pair.demand_pa.abs();
