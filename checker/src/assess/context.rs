@@ -5,7 +5,7 @@ use crate::demand::{K0Case, RockEnds, k0_cases, rock_ends};
 use crate::depth::{Budget, Context};
 use crate::diagnostic::Diagnostic;
 use crate::model::{Averaging, Carries, Groundwater, Model, SeaLevel};
-use crate::section::Site;
+use crate::section::{Section, Site};
 use crate::strength::joint_set::JointCapacity;
 use crate::strength::{Inputs, RockCapacity, Strength, design, mean, strength_factors};
 
@@ -143,7 +143,9 @@ fn joint_capacities(model: &Model, cautious: bool, faults: &mut Vec<Diagnostic>)
     for (s, set) in model.joint_sets.iter().enumerate() {
         match JointCapacity::new(set, cautious, &factors) {
             Ok(capacity) => capacities.push(capacity),
-            Err(error) => faults.push(Diagnostic::error("joints.strength", format!("joint_sets[{s}]"), format!("`{}`: {error}", set.name))),
+            Err(error) => {
+                faults.push(Diagnostic::error("joints.strength", format!("joint_sets[{}]", s + 1), format!("`{}`: {error}", set.name)))
+            }
         }
     }
     capacities
@@ -153,7 +155,7 @@ fn joint_capacities(model: &Model, cautious: bool, faults: &mut Vec<Diagnostic>)
 fn joint_warnings(model: &Model) -> Vec<Diagnostic> {
     let mut warnings = Vec::new();
     for (s, set) in model.joint_sets.iter().enumerate() {
-        let at = format!("joint_sets[{s}]");
+        let at = format!("joint_sets[{}]", s + 1);
         if let Some(strike) = set.strike_off_cliff_rad.filter(|a| STRIKE_OFF_CLIFF_RAD < *a) {
             let message = format!(
                 "the strike of `{}` lies {:.0} degrees off the cliff line: a plane section overstates how far such planes cut the rock off",
@@ -173,24 +175,24 @@ fn joint_warnings(model: &Model) -> Vec<Diagnostic> {
 
 /// Water tables that hang above a free face, and seas without a table, one warning a situation.
 fn water_warnings(model: &Model, site: &Site) -> Vec<Diagnostic> {
-    let sections = [site.surveyed_depth_m(), site.search_to_depth_m()].map(|depth| site.at_depth(depth));
+    let sections: Vec<_> = [site.surveyed_depth_m(), site.search_to_depth_m()].into_iter().filter_map(|d| site.at_depth(d).ok()).collect();
     let mut warnings = Vec::new();
     for (s, situation) in model.situations.iter().enumerate() {
-        let drop_m = |section: &crate::section::Section| WaterField::new(section, situation).map_or(0.0, |field| field.drawdown_m);
-        let drawdown_m = sections.iter().flatten().map(drop_m).fold(0.0, f64::max);
-        if 0.0 < drawdown_m {
+        let drop_m = |section: &Section| (WaterField::new(section, situation).map_or(0.0, |field| field.drawdown_m), section.depth_m());
+        let worst = sections.iter().map(drop_m).max_by(|a, b| a.0.total_cmp(&b.0));
+        if let Some((drawdown_m, depth_m)) = worst.filter(|w| 0.0 < w.0) {
             let message = format!(
-                "the water table of `{}` lies up to {drawdown_m:.1} m above a free face: it is drawn down to the face over a distance equal to \
-                 the head difference",
+                "the water table of `{}` lies up to {drawdown_m:.1} m above a free face (at an undercut depth of {depth_m:.1} m): it is drawn \
+                 down to the face over a distance equal to the head difference",
                 situation.name
             );
-            let hint = "give the table as it meets the face; a table that hangs above a free face gives false effective tension";
-            warnings.push(Diagnostic::warning("water.drawdown", format!("situations[{s}].groundwater"), message).hint(hint));
+            let hint = "a table that hangs above a free face would give tension that is not there; give it as it meets the face";
+            warnings.push(Diagnostic::warning("water.drawdown", format!("situations[{}].groundwater", s + 1), message).hint(hint));
         }
         if matches!(situation.sea_level, SeaLevel::Level(_)) && !matches!(situation.groundwater, Some(Groundwater::Table(_))) {
             let message =
                 format!("`{}` has the sea on the face and no water table: the ground below sea level is taken as full", situation.name);
-            warnings.push(Diagnostic::warning("water.sea-without-table", format!("situations[{s}].sea_level_m"), message));
+            warnings.push(Diagnostic::warning("water.sea-without-table", format!("situations[{}].sea_level_m", s + 1), message));
         }
     }
     warnings

@@ -86,14 +86,4 @@ fn opened_m(excess: &[(f64, f64)], length_m: f64) -> f64 {
 }
 
 #[cfg(test)]
-mod tests {
-    use super::opened_m;
-
-    /// By hand: excess 30 at 0.5 m and 10 at 1.5 m falls to 0 at 2.0 m; at the end it is 40.
-    #[test]
-    fn opening_ends_where_the_excess_is_used_up() {
-        assert!((opened_m(&[(0.5, 30.0), (1.5, 10.0), (2.5, -10.0)], 3.0) - 2.0).abs() < 1e-12);
-        assert!(opened_m(&[(0.5, -1.0), (1.5, 10.0), (2.5, 10.0)], 3.0).abs() <= 0.0);
-        assert!((opened_m(&[(0.5, 1.0), (1.5, 1.0)], 2.0) - 2.0).abs() < 1e-12);
-    }
-}
+mod tests;
