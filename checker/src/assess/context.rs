@@ -144,7 +144,8 @@ fn joint_capacities(model: &Model, cautious: bool, faults: &mut Vec<Diagnostic>)
         match JointCapacity::new(set, cautious, &factors) {
             Ok(capacity) => capacities.push(capacity),
             Err(error) => {
-                faults.push(Diagnostic::error("joints.strength", format!("joint_sets[{}]", s + 1), format!("`{}`: {error}", set.name)))
+                let message = format!("`{}`: {error}", set.name);
+                faults.push(Diagnostic::error("joints.strength", format!("joint_sets[{}]", s + 1), message));
             }
         }
     }
