@@ -26,6 +26,7 @@ pub(super) fn warnings(prepared: &Prepared<'_>, solved: &[Solved], numerics: &Nu
     notes.extend(setting(model, prepared));
     notes.extend(cliffs_own_tension(prepared, solved));
     notes.extend(discontinuities(model));
+    notes.extend(joints_not_sampled(model));
     notes.extend(already(critical));
     notes.extend(rating(model));
     notes
@@ -79,6 +80,12 @@ fn discontinuities(model: &Model) -> Option<Note> {
     let silent = model.joint_sets.is_empty() && model.discontinuity_survey.is_none();
     silent
         .then(|| note("joints.unknown", "no joint set is given and nobody states that none was seen: unseen joints govern many collapses"))
+}
+
+/// Years and probability without the paths of the joint sets.
+fn joints_not_sampled(model: &Model) -> Option<Note> {
+    let text = "the outlook samples no paths of joint sets: its years, probabilities and setbacks hold for the other checks only";
+    (model.outlook.is_some() && !model.joint_sets.is_empty()).then(|| note("joints.not-sampled", text))
 }
 
 /// Checks over their limit today or without any undercut.
