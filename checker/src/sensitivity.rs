@@ -118,7 +118,7 @@ fn rock_variations(model: &Model, r: usize) -> Vec<Variation> {
     };
     let gamma = &rock.unit_weight_n_per_m3;
     if 0.0 < standard_deviation(gamma) {
-        add("unit weight", low_high(gamma, [0.0; 2]), 1e-3, "kN/m3", &|k, v| k.unit_weight_n_per_m3 = Uncertain::Exact(v));
+        add("unit weight", low_high(gamma, [0.0; 2]), 1e-3, "kN/m3", &set_unit_weight);
     }
     if let Some(k0) = &rock.k0 {
         let mean = k0.mean();
@@ -142,6 +142,13 @@ fn rock_variations(model: &Model, r: usize) -> Vec<Variation> {
         });
     }
     all
+}
+
+/// Sets a rock's moist unit weight; the saturated one keeps its ratio to it.
+fn set_unit_weight(rock: &mut Rock, n_per_m3: f64) {
+    let ratio = rock.saturated_unit_weight_n_per_m3.mean() / rock.unit_weight_n_per_m3.mean();
+    rock.unit_weight_n_per_m3 = Uncertain::Exact(n_per_m3);
+    rock.saturated_unit_weight_n_per_m3 = Uncertain::Exact(ratio * n_per_m3);
 }
 
 /// Ends of a friction angle: one standard deviation, else its tangent times 0.7 and 1.3.

@@ -107,6 +107,18 @@ fn same(a: &CheckResult, b: &CheckResult) -> bool {
     a.check == b.check && a.situation == b.situation && a.inputs == b.inputs
 }
 
+/// The whole job runs on every demo and lists what the answer hangs on.
+#[test]
+fn the_whole_job_runs_on_every_demo() {
+    for name in DEMOS {
+        let mut model = demo(name);
+        model.undercut.depth_step_m = 0.5 * model.undercut.search_to_depth_m;
+        let assessment = run(&model, Scope::Assess);
+        assert!(!assessment.outcome.hangs_on.is_empty(), "{name}");
+        assert_eq!(assessment.fields.len(), assessment.outcome.depths.len(), "{name}");
+    }
+}
+
 /// The same results, bit for bit, for one and two threads and over repeated runs.
 #[test]
 fn results_do_not_depend_on_threads() {

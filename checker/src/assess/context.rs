@@ -70,6 +70,13 @@ impl Prepared<'_> {
         self
     }
 
+    /// The same with the load cases of another preparation, whose solutions are used again.
+    #[must_use]
+    pub fn with_cases_of(mut self, other: &Prepared<'_>) -> Self {
+        self.cases.clone_from(&other.cases);
+        self
+    }
+
     /// The same with another averaging length held, m.
     #[must_use]
     pub fn with_averaging_length(mut self, length_m: f64) -> Self {

@@ -63,6 +63,9 @@ impl Run<'_> {
             if variation.k0_held {
                 prepared = prepared.with_k0_of(self.prepared);
             }
+            if !variation.solve_again {
+                prepared = prepared.with_cases_of(self.prepared);
+            }
             let series = if variation.solve_again { solved_again(&prepared, solved, again)? } else { evaluated_again(&prepared, solved) };
             (utilization[i], critical_depth_m[i]) = self.answer(&series);
         }
